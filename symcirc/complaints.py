@@ -1,0 +1,125 @@
+"""What is said when something is wrong: one family, each with its place, its cause and its mend.
+
+A :class:`Complaint` is the user's to mend (exit status 2). A :class:`Remark` is odd but solvable and is only
+shown. An :class:`InternalFault` is the program's own and asks to be reported (exit status 70).
+"""
+
+from __future__ import annotations
+
+import difflib
+from collections.abc import Iterable
+from dataclasses import dataclass, field
+
+
+@dataclass(frozen=True)
+class Source:
+    """A text that was read, with the name it is known by in complaints."""
+
+    file: str
+    text: str
+
+    def line(self, number: int) -> str:
+        """Return line ``number`` (counted from 1) without its line end; empty where there is none."""
+        lines = self.text.split("\n")
+        return lines[number - 1].rstrip("\r") if 0 < number <= len(lines) else ""
+
+
+@dataclass(frozen=True, order=True)
+class Place:
+    """A stretch of one line of a source. Lines and columns count from 1; ``end`` is the column after it."""
+
+    line: int
+    column: int
+    end: int
+    source: Source = field(repr=False, compare=False)
+
+    def excerpt(self) -> str:
+        """Return the line and, under it, a mark below the place.
+
+        >>> print(Place(1, 5, 7, Source("a.stage", "fix R1 = 2 k")).excerpt())
+            1 | fix R1 = 2 k
+              |     ^^
+        """
+        text = self.source.line(self.line)
+        shown, before = text, text[: self.column - 1]
+        if len(text) > 160:  # a hostile line of a million characters is shown around the place only
+            start = max(0, self.column - 60)
+            shown, before = text[start : start + 120], text[start : self.column - 1]
+        indent = "".join("\t" if c == "\t" else " " for c in before)
+        width = max(1, min(self.end - self.column, 120, max(1, len(shown) - len(before))))
+        return f"{self.line:5} | {shown}\n      | {indent}{'^' * width}"
+
+
+class Complaint(Exception):
+    """Something in the user's text cannot be used.
+
+    ``cause`` says in one sentence what is wrong, ``mend`` in one what would mend it.
+    """
+
+    def __init__(self, place: Place, cause: str, mend: str) -> None:
+        super().__init__(cause)
+        self.place = place
+        self.cause = cause
+        self.mend = mend
+
+    def __str__(self) -> str:
+        where = f"{self.place.source.file}:{self.place.line}:{self.place.column}"
+        return f"{where}: {self.cause}\n{self.place.excerpt()}\nmend: {self.mend}"
+
+    def as_json(self) -> dict[str, object]:
+        """Return the complaint as the design's JSON ``error`` object."""
+        return {
+            "file": self.place.source.file,
+            "line": self.place.line,
+            "column": self.place.column,
+            "message": self.cause,
+            "help": self.mend,
+        }
+
+
+@dataclass(frozen=True)
+class Remark:
+    """A warning: odd, but solvable."""
+
+    place: Place
+    message: str
+
+    def __str__(self) -> str:
+        where = f"{self.place.source.file}:{self.place.line}:{self.place.column}"
+        return f"{where}: warning: {self.message}"
+
+    def as_json(self) -> dict[str, object]:
+        """Return the remark as an entry of the design's JSON ``warnings`` list."""
+        return {"line": self.place.line, "column": self.place.column, "message": self.message}
+
+
+class InternalFault(Exception):
+    """The program contradicts itself; no input should cause this."""
+
+
+def nearest(word: str, known: Iterable[str]) -> str:
+    """Return a phrase that offers the known words nearest to ``word``, or an empty string.
+
+    >>> nearest("R12", ["R1", "R2", "out"])
+    'did you mean R1 or R2?'
+    >>> nearest("zzz", ["R1"])
+    ''
+    """
+    candidates = sorted(set(known))
+    folded = [c for c in candidates if c.lower() == word.lower() and c != word]
+    close = folded or difflib.get_close_matches(word, candidates, n=3, cutoff=0.6)
+    if not close:
+        return ""
+    return "did you mean " + " or ".join(sorted(close)) + "?"
+
+
+def listed(words: Iterable[str], last: str = "and") -> str:
+    """Join words as a sentence does.
+
+    >>> listed(["R1", "R2", "C1"])
+    'R1, R2 and C1'
+    """
+    items = list(words)
+    if len(items) < 2:
+        return "".join(items)
+    return ", ".join(items[:-1]) + f" {last} " + items[-1]
