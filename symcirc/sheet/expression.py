@@ -156,4 +156,6 @@ def rename(expression: Expression, new_text: Callable[[Name], str]) -> Expressio
 
 def refuse_zero_division(place: Place) -> Complaint:
     """Return the complaint about an expression that divides by zero."""
-    return Complaint(place, "this divides by zero", "change what stands under the line so that it is not zero")
+    return Complaint(
+        place, "this divides by zero", "change what stands under the line so that it is not zero"
+    )
