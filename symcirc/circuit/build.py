@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import networkx as nx
 
 from symcirc.circuit.model import Circuit, CurrentDrive, Drive, LoopDrive, Setup, VoltageDrive
 from symcirc.complaints import Complaint
-from symcirc.sheet.model import GROUND, Ask, Device, NodeCurrent, Sheet, Voltage
+from symcirc.sheet.model import GROUND, Ask, Device, NodeCurrent, Quantity, Sheet, Voltage
 
 #: The current-carrying branches of each kind of device, by role; a role with one node is a branch to ground.
 BRANCHES = {
@@ -44,7 +46,16 @@ def build_circuit(sheet: Sheet) -> Circuit:
     for device in sheet.devices:
         for role in BRANCHES[device.kind]:
             graph.add_edge(*branch(device, role), key=(device.name, role))
-    return Circuit(sheet.parts, sheet.devices, graph, sheet.node_labels, sheet.node_places, sheet.ports)
+    devices = tuple(_with_declared(device, sheet) for device in sheet.devices)
+    return Circuit(sheet.parts, devices, graph, sheet.node_labels, sheet.node_places, sheet.ports)
+
+
+def _with_declared(device: Device, sheet: Sheet) -> Device:
+    """Give an amplifier the parameters that the sheet declares elsewhere (``fix U1_gain = 1e5``)."""
+    if device.kind != "opamp":
+        return device
+    names = {word: f"{device.name}_{word}" for word in ("gain", "gbw")}
+    return replace(device, parameters={word: name for word, name in names.items() if name in sheet.symbols})
 
 
 def build_setup(circuit: Circuit, asks: tuple[Ask, ...], ask: Ask) -> Setup:
@@ -99,9 +110,12 @@ def _amplifier(circuit: Circuit, name: str) -> Device:
     return next(device for device in circuit.devices if device.name == name)
 
 
-def _over_and_under(circuit: Circuit, ask: Ask) -> tuple[Voltage, Voltage]:
+def _over_and_under(circuit: Circuit, ask: Ask) -> tuple[Quantity, Quantity]:
     if ask.loop is not None:
         amplifier = _amplifier(circuit, ask.loop)
         (plus,), (minus,), (out,) = (amplifier.terminals[role] for role in ("plus", "minus", "drives"))
         return Voltage(plus, minus, ask.place), Voltage(out, GROUND, ask.place)
-    return ask.over, ask.under  # type: ignore[return-value]
+    assert (
+        ask.over is not None and ask.under is not None
+    )  # the sheet's reader gives both where there is no loop
+    return ask.over, ask.under

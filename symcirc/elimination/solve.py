@@ -23,8 +23,8 @@ def silent(line: str) -> None:
 def solve(system: System, progress: Callable[[str], None] = silent) -> Ratio | None:
     """Return the asked ratio ``over / under`` of a nodal system, or None where the equations are singular.
 
-    By Cramer's rule over the integers, in one ring generator for the weight of each part, so that no entry is a
-    fraction; the weights turn into powers of the parts and of s at the end. Also None where ``under`` is zero.
+    Where ``under`` is zero whatever the drive is, the ratio's denominator is empty. By Cramer's rule over the integers, in one ring generator for the weight of each part, so that no entry is a
+    fraction; the weights turn into powers of the parts and of s at the end.
     """
     weights = _weights(system)
     names = list(weights)
@@ -33,8 +33,10 @@ def solve(system: System, progress: Callable[[str], None] = silent) -> Ratio | N
     over = _answer(system, system.over, ring, generators, progress)
     under = _answer(system, system.under, ring, generators, progress)
     determinant = over[1]
-    if not determinant or not under[0]:
+    if not determinant:
         return None
+    if not under[0]:
+        return Ratio(tuple(names), (), ())
     return _ratio(over[0], under[0], weights)
 
 

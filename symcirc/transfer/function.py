@@ -24,3 +24,10 @@ class TransferFunction:
     def order(self) -> int:
         """The degree of the denominator in s."""
         return len(self.denominator) - 1
+
+
+def symbols_in(function: TransferFunction) -> set[str]:
+    """Return the names that the function's coefficients hold."""
+    gens = function.ring.symbols
+    coefficients = (*function.numerator, *function.denominator)
+    return {str(gens[k]) for c in coefficients for monomial in c for k, e in enumerate(monomial) if e}

@@ -6,7 +6,11 @@ It is built from the parts themselves and shares no code with the symbolic ways 
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+import math
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import Any
 
 import numpy as np
 import numpy.typing as npt
@@ -27,32 +31,46 @@ from symcirc.sheet.expression import (
 from symcirc.sheet.fixes import tie_order
 from symcirc.sheet.model import Device, NodeCurrent, Part, PartCurrent, Quantity, Voltage
 
-Matrix = npt.NDArray[np.complex128]
+Array = npt.NDArray[Any]
 
 
-def complete(values: Mapping[str, complex], ties: Mapping[str, Expression], s: complex) -> dict[str, complex]:
+@dataclass(frozen=True)
+class Arithmetic:
+    """The numbers that a solve is made in: how to make one, pi, and the square root."""
+
+    number: Callable[[Fraction], Any]
+    pi: Any
+    sqrt: Callable[[Any], Any]
+
+
+FLOATS = Arithmetic(float, np.pi, lambda x: np.sqrt(complex(x)))
+
+
+def complete(
+    values: Mapping[str, Any], ties: Mapping[str, Expression], s: Any, arithmetic: Arithmetic = FLOATS
+) -> dict[str, Any]:
     """Return the values of all names at one complex frequency, the tied ones computed.
 
     >>> complete({"R1": 2.0}, {}, 1j)
     {'R1': 2.0}
     """
-    known = {**values}
+    known = {**values, "s": s, "pi": arithmetic.pi}
     for name in tie_order(ties):
-        known[name] = _evaluate(ties[name], known, s)
-    return known
+        known[name] = _evaluate(ties[name], known, arithmetic)
+    return {name: value for name, value in known.items() if name not in ("s", "pi")}
 
 
-def _evaluate(expression: Expression, known: Mapping[str, complex], s: complex) -> complex:
-    def combine(node: Expression, operands: list[complex]) -> complex:
+def _evaluate(expression: Expression, known: Mapping[str, Any], arithmetic: Arithmetic) -> Any:
+    def combine(node: Expression, operands: list[Any]) -> Any:
         match node:
             case Number(value=value):
-                return float(value)
+                return arithmetic.number(value)
             case Name(text=text):
-                return {"s": s, "pi": np.pi}[text] if text in ("s", "pi") else known[text]
+                return known[text]
             case Sum():
                 return sum(operands)
             case Product():
-                return complex(np.prod(operands))
+                return math.prod(operands)
             case Negative():
                 return -operands[0]
             case Reciprocal():
@@ -60,15 +78,18 @@ def _evaluate(expression: Expression, known: Mapping[str, complex], s: complex) 
             case Power(exponent=exponent):
                 return operands[0] ** exponent
             case Root():
-                return complex(np.sqrt(complex(operands[0])))
+                return arithmetic.sqrt(operands[0])
 
     return fold(expression, combine)
 
 
 class Network:
-    """A circuit with numbers in it, at one complex frequency, under one drive of size 1."""
+    """A circuit with numbers in it, at one complex frequency, under one drive of size 1.
 
-    def __init__(self, circuit: Circuit, setup: Setup, values: Mapping[str, complex], s: complex) -> None:
+    The numbers are floats, or of any type that numpy holds as objects.
+    """
+
+    def __init__(self, circuit: Circuit, setup: Setup, values: Mapping[str, Any], s: Any) -> None:
         self.setup = setup
         self.values = values
         self.s = s
@@ -77,30 +98,31 @@ class Network:
         nodes = [node for node in circuit.graph if node != "gnd"]
         self.index = {node: i for i, node in enumerate(nodes)}
         self.extra: dict[str, int] = {}
-        self.matrix: Matrix = np.zeros((len(nodes), len(nodes)), dtype=complex)
-        self.right = np.zeros(len(nodes), dtype=complex)
+        kind = complex if isinstance(s, complex) else object
+        self.matrix: Array = np.zeros((len(nodes), len(nodes)), dtype=kind)
+        self.right: Array = np.zeros(len(nodes), dtype=kind)
         for part in circuit.parts:
-            self._stamp_admittance(part.first, part.second, self.admittance(part))
+            self._stamp_controlled(
+                (part.first, part.second), (part.first, part.second), self.admittance(part)
+            )
         for device in circuit.devices:
             self._stamp_device(device)
         self._stamp_drives()
-        scale = np.abs(self.matrix).max(axis=1, keepdims=True)
-        scale[scale == 0] = 1.0
-        self.matrix /= scale
-        self.right /= scale[:, 0]
 
     def condition(self) -> float:
-        """Return the condition number of the scaled matrix: how far rounding can be magnified."""
-        return float(np.linalg.cond(self.matrix)) if self.matrix.size else 1.0
+        """Return the condition number of the matrix, its rows scaled: how far rounding can be magnified."""
+        scale = np.abs(self.matrix).max(axis=1, keepdims=True)
+        scale[scale == 0] = 1.0
+        return float(np.linalg.cond(self.matrix / scale))
 
-    def ratio(self) -> complex:
+    def ratio(self, solve: Callable[[Array, Array], Array] = np.linalg.solve) -> Any:
         """Return the asked ratio; raises ``numpy.linalg.LinAlgError`` where the matrix is singular."""
-        solution = np.linalg.solve(self.matrix, self.right)
+        solution = solve(self.matrix, self.right)
         return self._read(self.setup.over, solution) / self._read(self.setup.under, solution)
 
     # numbers in the matrix ---------------------------------------------------------------------------------------
 
-    def admittance(self, part: Part) -> complex:
+    def admittance(self, part: Part) -> Any:
         """Return the admittance of a two-terminal part, in siemens."""
         value = self.values[part.name]
         match part.kind:
@@ -113,35 +135,33 @@ class Network:
             case _:
                 return value
 
-    def _add(self, row: int | None, column: int | None, value: complex) -> None:
+    def _add(self, row: int | None, column: int | None, value: Any) -> None:
         if row is not None and column is not None:
             self.matrix[row, column] += value
 
     def _at(self, node: str) -> int | None:
         return self.index.get(node)
 
-    def _stamp_admittance(self, first: str, second: str, y: complex) -> None:
-        self._stamp_controlled(first, second, first, second, y)
+    def _stamp_controlled(self, branch: tuple[str, ...], control: tuple[str, ...], g: Any) -> None:
+        """A current g (V_plus - V_minus) of the control flows through the branch, first node to second."""
+        for node, sign in zip(branch, (1, -1), strict=True):
+            self._add(self._at(node), self._at(control[0]), sign * g)
+            self._add(self._at(node), self._at(control[1]), -sign * g)
 
-    def _stamp_controlled(self, out: str, back: str, plus: str, minus: str, g: complex) -> None:
-        """A current g (V_plus - V_minus) flows through a branch from ``out`` to ``back``."""
-        for node, sign in ((out, 1), (back, -1)):
-            self._add(self._at(node), self._at(plus), sign * g)
-            self._add(self._at(node), self._at(minus), -sign * g)
-
-    def _new_branch(self, name: str, first: str, second: str) -> int:
-        """Append an unknown current from ``first`` to ``second`` and an empty law for it; return its position."""
+    def _new_branch(self, name: str, ends: tuple[str, ...]) -> int:
+        """Append an unknown current from the first node to the second and an empty law; return its position."""
         size = len(self.right)
         self.matrix = np.pad(self.matrix, ((0, 1), (0, 1)))
         self.right = np.append(self.right, 0)
         self.extra[name] = size
-        self._add(self._at(first), size, 1)
-        self._add(self._at(second), size, -1)
+        self._add(self._at(ends[0]), size, 1)
+        self._add(self._at(ends[1]), size, -1)
         return size
 
-    def _law(self, row: int, plus: str, minus: str, factor: complex = 1) -> None:
-        self._add(row, self._at(plus), factor)
-        self._add(row, self._at(minus), -factor)
+    def _law(self, row: int, pair: tuple[str, ...], factor: Any = 1) -> None:
+        """Add factor (V_first - V_second) to a law."""
+        self._add(row, self._at(pair[0]), factor)
+        self._add(row, self._at(pair[1]), -factor)
 
     def _stamp_device(self, device: Device) -> None:
         ends = {role: (*nodes, "gnd")[:2] for role, nodes in device.terminals.items()}
@@ -151,66 +171,70 @@ class Network:
         name = device.name
         match device.kind:
             case "opamp" | "amplifier":
-                row = self._new_branch(name, "gnd", ends["drives"][0])
-                if isinstance(self.setup.drive, LoopDrive) and self.setup.drive.amplifier == name:
-                    self._law(row, ends["drives"][0], "gnd")
-                    self.right[row] = 1
-                    return
-                if device.kind == "amplifier":
-                    self._law(row, ends["drives"][0], "gnd", -1 / number["gain"])
-                self._law(row, ends["plus"][0], ends["minus"][0])
+                self._stamp_amplifier(device, number)
             case "vcvs":
-                row = self._new_branch(name, *ends["drives"])
-                self._law(row, *ends["drives"])
-                self._law(row, *ends["senses"], -number["gain"])
+                row = self._new_branch(name, ends["drives"])
+                self._law(row, ends["drives"])
+                self._law(row, ends["senses"], -number["gain"])
             case "vccs":
-                self._stamp_controlled(*ends["drives"], *ends["senses"], number["gm"])
-            case "cccs" | "ccvs":
-                self._stamp_current_controlled(device, ends, number)
+                self._stamp_controlled(ends["drives"], ends["senses"], number["gm"])
+            case "cccs":
+                sensed = self._stamp_sensing(device)
+                for node, sign in zip(ends["drives"], (1, -1), strict=True):
+                    self._add(self._at(node), sensed, sign * number["gain"])
+            case "ccvs":
+                sensed = self._stamp_sensing(device)
+                row = self._new_branch(name, ends["drives"])
+                self._law(row, ends["drives"])
+                self.matrix[row, sensed] -= number["rm"]
             case "transformer":
-                row = self._new_branch(name, *ends["primary"])
+                row = self._new_branch(name, ends["primary"])
                 self._add(self._at(ends["secondary"][0]), row, -number["ratio"])
                 self._add(self._at(ends["secondary"][1]), row, number["ratio"])
-                self._law(row, *ends["primary"])
-                self._law(row, *ends["secondary"], -number["ratio"])
+                self._law(row, ends["primary"])
+                self._law(row, ends["secondary"], -number["ratio"])
             case "conveyor":
-                row = self._new_branch(name, ends["x"][0], "gnd")
+                row = self._new_branch(name, ends["x"])
                 self._add(self._at(ends["z"][0]), row, device.sign)
-                self._law(row, ends["x"][0], ends["y"][0])
+                self._law(row, (ends["x"][0], ends["y"][0]))
 
-    def _stamp_current_controlled(
-        self, device: Device, ends: Mapping[str, tuple[str, ...]], number: Mapping[str, complex]
-    ) -> None:
-        sensed = self._new_branch(f"{device.name} senses", *ends["senses"])
-        self._law(sensed, *ends["senses"])
-        if device.kind == "cccs":
-            for node, sign in zip(ends["drives"], (1, -1), strict=True):
-                self._add(self._at(node), sensed, sign * number["gain"])
+    def _stamp_amplifier(self, device: Device, number: Mapping[str, Any]) -> None:
+        (plus,), (minus,), (out,) = (device.terminals[role] for role in ("plus", "minus", "drives"))
+        row = self._new_branch(device.name, ("gnd", out))
+        drive = self.setup.drive
+        if isinstance(drive, LoopDrive) and drive.amplifier == device.name:
+            self._law(row, (out, "gnd"))
+            self.right[row] = 1
             return
-        row = self._new_branch(device.name, *ends["drives"])
-        self._law(row, *ends["drives"])
-        self.matrix[row, sensed] -= number["rm"]
+        if device.kind == "amplifier":
+            self._law(row, (out, "gnd"), -1 / number["gain"])
+        self._law(row, (plus, minus))
+
+    def _stamp_sensing(self, device: Device) -> int:
+        row = self._new_branch(f"{device.name} senses", device.terminals["senses"])
+        self._law(row, device.terminals["senses"])
+        return row
 
     def _stamp_drives(self) -> None:
         drive = self.setup.drive
         for plus, minus in self.setup.shorts:
-            self._law(self._new_branch(f"short {plus}", minus, plus), plus, minus)
+            self._law(self._new_branch(f"short {plus}", (minus, plus)), (plus, minus))
         if isinstance(drive, VoltageDrive):
-            row = self._new_branch("drive", drive.minus, drive.plus)
-            self._law(row, drive.plus, drive.minus)
+            row = self._new_branch("drive", (drive.minus, drive.plus))
+            self._law(row, (drive.plus, drive.minus))
             self.right[row] = 1
         elif isinstance(drive, CurrentDrive):
             self.right[self.index[drive.node]] += 1
 
     # what is asked -----------------------------------------------------------------------------------------------
 
-    def _volts(self, node: str, solution: Matrix) -> complex:
-        return complex(solution[self.index[node]]) if node in self.index else 0j
+    def _volts(self, node: str, solution: Array) -> Any:
+        return solution[self.index[node]] if node in self.index else 0
 
-    def _across(self, nodes: tuple[str, ...], solution: Matrix) -> complex:
+    def _across(self, nodes: tuple[str, ...], solution: Array) -> Any:
         return self._volts(nodes[0], solution) - self._volts(nodes[1], solution)
 
-    def _read(self, quantity: Quantity, solution: Matrix) -> complex:
+    def _read(self, quantity: Quantity, solution: Array) -> Any:
         match quantity:
             case Voltage(plus=plus, minus=minus):
                 return self._across((plus, minus), solution)
@@ -219,7 +243,7 @@ class Network:
             case NodeCurrent(node=node):
                 return self._delivered(node, solution)
 
-    def _part_current(self, name: str, solution: Matrix) -> complex:
+    def _part_current(self, name: str, solution: Array) -> Any:
         if name in self.parts:
             part = self.parts[name]
             return self.admittance(part) * self._across((part.first, part.second), solution)
@@ -227,17 +251,16 @@ class Network:
         if device.kind == "vccs":
             return self.values[device.parameters["gm"]] * self._across(device.terminals["senses"], solution)
         if device.kind == "cccs":
-            sensed = complex(solution[self.extra[f"{name} senses"]])
-            return self.values[device.parameters["gain"]] * sensed
-        return complex(solution[self.extra[name]])
+            return self.values[device.parameters["gain"]] * solution[self.extra[f"{name} senses"]]
+        return solution[self.extra[name]]
 
-    def _delivered(self, node: str, solution: Matrix) -> complex:
+    def _delivered(self, node: str, solution: Array) -> Any:
         drive = self.setup.drive
-        if isinstance(drive, CurrentDrive):
-            live = 1 + 0j if drive.node == node else 0j
-        elif isinstance(drive, VoltageDrive):
-            live = complex(solution[self.extra["drive"]]) if drive.plus == node else 0j
-        else:
-            live = 0j
-        short = self.extra.get(f"short {node}")
-        return live + (complex(solution[short]) if short is not None else 0j)
+        delivered: Any = 0
+        if isinstance(drive, CurrentDrive) and drive.node == node:
+            delivered += 1
+        if isinstance(drive, VoltageDrive) and drive.plus == node:
+            delivered += solution[self.extra["drive"]]
+        if f"short {node}" in self.extra:
+            delivered += solution[self.extra[f"short {node}"]]
+        return delivered

@@ -1,0 +1,166 @@
+"""Whether a derived function and the plain numeric solve of the circuit agree."""
+
+from __future__ import annotations
+
+import math
+import random
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Any
+
+import mpmath
+import numpy as np
+from sympy.polys.domains import QQ
+from sympy.polys.rings import PolyElement
+
+from symcirc.circuit.amplifier import gain_symbol
+from symcirc.circuit.model import Circuit, LoopDrive, Setup
+from symcirc.complaints import InternalFault
+from symcirc.sheet.expression import Expression, names
+from symcirc.transfer.function import TransferFunction
+from symcirc.witness.network import Arithmetic, Network, complete
+
+POINTS = 4
+#: The largest relative departure that is taken for rounding, where the matrix does not magnify it.
+TOLERANCE = 1e-9
+#: A matrix that magnifies rounding more than this is not used as evidence; another point is taken.
+WORST_CONDITION = 1e5
+MOST_TRIES = 40
+#: Both values smaller than this count as zero: a function that is zero comes out of the solve as rounding.
+SMALLEST = 1e-12
+
+
+@dataclass(frozen=True)
+class Evidence:
+    """How a function was confirmed: at so many points, with this largest relative departure."""
+
+    points: int
+    departure: float
+
+
+def numeric_ratio(
+    circuit: Circuit, setup: Setup, ties: Mapping[str, Expression], values: Mapping[str, Any], s: complex
+) -> tuple[complex, float]:
+    """Return the asked ratio of the circuit with numbers at one complex frequency, and its matrix's condition."""
+    known = complete(values, ties, s)
+    network = Network(circuit, setup, known, s)
+    return complex(network.ratio() * _loop_factor(setup, known)), network.condition()
+
+
+def precise_ratio(
+    circuit: Circuit, setup: Setup, ties: Mapping[str, Expression], values: Mapping[str, Any], s: Any
+) -> Any:
+    """Return the asked ratio in mpmath's numbers, at the precision that is set."""
+
+    def solve(matrix: Any, right: Any) -> Any:
+        return np.array(
+            mpmath.lu_solve(mpmath.matrix(matrix.tolist()), mpmath.matrix(right.tolist())), dtype=object
+        )
+
+    numbers = Arithmetic(lambda x: mpmath.mpf(x.numerator) / x.denominator, +mpmath.pi, mpmath.sqrt)
+    known = complete(values, ties, s, numbers)
+    return Network(circuit, setup, known, s).ratio(solve) * _loop_factor(setup, known)
+
+
+def _loop_factor(setup: Setup, known: Mapping[str, Any]) -> Any:
+    """The loop gain is minus the amplifier's gain times what the network gives: T = -A (V+ - V-)/V_drives."""
+    return -known[gain_symbol(setup.drive.amplifier)] if isinstance(setup.drive, LoopDrive) else 1
+
+
+def value_of(function: TransferFunction, values: Mapping[str, Any], s: Any, pi: Any = math.pi) -> Any:
+    """Return the function's value, in the kind of numbers that it is given."""
+    known = [pi if str(x) == "pi" else values.get(str(x), 1) for x in function.ring.symbols]
+
+    def coefficient(polynomial: PolyElement) -> Any:
+        terms = (
+            math.prod(
+                (known[k] ** e for k, e in enumerate(monomial) if e), start=_number(number, function, s)
+            )
+            for monomial, number in polynomial.terms()
+        )
+        return sum(terms, start=0 * s)
+
+    above = sum((coefficient(c) * s**k for k, c in enumerate(function.numerator)), start=0 * s)
+    below = sum((coefficient(c) * s**k for k, c in enumerate(function.denominator)), start=0 * s)
+    return above / below
+
+
+def _number(number: Any, function: TransferFunction, s: Any) -> Any:
+    if function.ring.domain == QQ:
+        above, below = int(number.numerator), int(number.denominator)
+        return above / below if isinstance(s, complex) else mpmath.mpf(above) / below
+    exact = function.ring.domain.to_sympy(number)
+    return complex(exact) if isinstance(s, complex) else mpmath.mpmathify(exact.evalf(mpmath.mp.dps))
+
+
+def confirm(
+    circuit: Circuit, setup: Setup, ties: Mapping[str, Expression], function: TransferFunction
+) -> Evidence:
+    """Compare a function with the numeric solve at random part values and complex frequencies.
+
+    The values lie within a factor of 4 about 1 and the frequencies near the unit circle, off the axis, so that the
+    matrices are well scaled. Where ties hold numbers that spoil the scale, the solve is repeated with 60 digits.
+    Raises InternalFault where the two disagree.
+    """
+    generator = random.Random(f"{setup.ask} {len(circuit.parts)}")  # seeded: the same points on every run
+    free = sorted(_free_symbols(circuit, ties))
+    departures: list[float] = []
+    for _ in range(MOST_TRIES):
+        values, s = _random_point(free, generator)
+        try:
+            there, condition = numeric_ratio(circuit, setup, ties, values, s)
+        except (np.linalg.LinAlgError, ZeroDivisionError):
+            continue
+        if condition < WORST_CONDITION and np.isfinite(there):
+            departures.append(_departure(setup, value_of(function, values, s), there))
+        if len(departures) == POINTS:
+            return Evidence(POINTS, max(departures))
+    return _confirm_precisely(circuit, setup, ties, function, free)
+
+
+def _confirm_precisely(
+    circuit: Circuit,
+    setup: Setup,
+    ties: Mapping[str, Expression],
+    function: TransferFunction,
+    free: list[str],
+) -> Evidence:
+    generator = random.Random(setup.ask)
+    departures: list[float] = []
+    with mpmath.workdps(60):
+        for _ in range(MOST_TRIES):
+            values, point = _random_point(free, generator)
+            exact, s = {name: mpmath.mpf(v) for name, v in values.items()}, mpmath.mpc(point)
+            try:
+                there = precise_ratio(circuit, setup, ties, exact, s)
+            except ZeroDivisionError:
+                continue
+            departures.append(_departure(setup, value_of(function, exact, s, mpmath.pi), there))
+            if len(departures) == POINTS:
+                return Evidence(POINTS, max(departures))
+    raise InternalFault(f"no point was found at which {setup.ask} could be confirmed by a numeric solve")
+
+
+def _random_point(free: list[str], generator: random.Random) -> tuple[dict[str, float], complex]:
+    values = {name: generator.uniform(0.5, 2.0) for name in free}
+    return values, complex(generator.uniform(0.1, 0.6), generator.uniform(0.6, 1.6))
+
+
+def _departure(setup: Setup, here: Any, there: Any) -> float:
+    size = max(abs(here), abs(there))
+    if size < SMALLEST:
+        return 0.0
+    departure = float(abs(here - there) / size)
+    if not departure <= TOLERANCE:
+        raise InternalFault(
+            f"the derived {setup.ask} is {complex(here):.12g}, "
+            f"and the numeric solve of the circuit gives {complex(there):.12g}"
+        )
+    return departure
+
+
+def _free_symbols(circuit: Circuit, ties: Mapping[str, Expression]) -> set[str]:
+    symbols = {part.name for part in circuit.parts}
+    symbols |= {symbol for device in circuit.devices for symbol in device.parameters.values()}
+    symbols |= {name.text for tie in ties.values() for name in names(tie)}
+    return symbols - set(ties) - {"s", "pi"}
