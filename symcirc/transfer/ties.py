@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
@@ -42,24 +43,16 @@ class Quotient:
     below: PolyElement
 
 
-def natural_key(name: str) -> tuple[tuple[int, int | str], ...]:
-    """Return a key that sorts R2 before R10, and R before C before L before the rest.
+def natural_key(name: str) -> tuple[int, tuple[tuple[int, int, str], ...]]:
+    """Return a key that sorts R before C before L before the rest, and R2 before R10; blocks keep to that too.
 
-    >>> sorted(["C1", "R10", "k", "R2"], key=natural_key)
-    ['R2', 'R10', 'C1', 'k']
+    >>> sorted(["C1", "R10", "k", "R2", "S1_C1", "S1_R1"], key=natural_key)
+    ['R2', 'R10', 'S1_R1', 'C1', 'S1_C1', 'k']
     """
-    kind = "RCLZY".find(name[0]) if name[1:2].isdigit() else 5
-    pieces: list[tuple[int, int | str]] = [(0, kind if kind >= 0 else 5)]
-    digits = ""
-    for character in name + "\0":
-        if character.isdigit():
-            digits += character
-            continue
-        if digits:
-            pieces.append((1, int(digits)))
-            digits = ""
-        pieces.append((2, character))
-    return tuple(pieces)
+    own = name.rsplit("_", 1)[-1]
+    kind = "RCLZY".find(own[0]) if own[1:2].isdigit() else -1
+    pieces = re.findall(r"[0-9]+|[^0-9]+", name)
+    return kind % 6, tuple((1, int(p), "") if p.isdigit() else (0, 0, p) for p in pieces)
 
 
 def ring_for(symbols: Iterable[str], ties: Mapping[str, Expression]) -> PolyRing:
