@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Container, Mapping
 from dataclasses import dataclass
 
 from symcirc.circuit import build_circuit, build_setup
@@ -51,8 +51,8 @@ class Derivation:
         return next(answer for answer in self.answers if answer.ask.name == name)
 
 
-def derive(sheet: Sheet, progress: Progress = silent) -> Derivation:
-    """Return the transfer functions of a sheet's asks, its amplifiers ideal.
+def derive(sheet: Sheet, wanted: Container[str] | None = None, progress: Progress = silent) -> Derivation:
+    """Return the transfer functions of a sheet's asks (or of the wanted ones only), its amplifiers ideal.
 
     Raises Complaint for a circuit that cannot be solved, InternalFault where the two ways to an answer disagree.
 
@@ -62,22 +62,32 @@ def derive(sheet: Sheet, progress: Progress = silent) -> Derivation:
     >>> derive(sheet).answer("H").function.denominator
     (1, R1*C1)
     """
-    return _derive(sheet, build_circuit(sheet), sheet.ties, progress)
+    return _derive(sheet, build_circuit(sheet), sheet.ties, wanted, progress)
 
 
-def derive_real(sheet: Sheet, progress: Progress = silent) -> Derivation:
-    """Return the transfer functions of a sheet's asks with the amplifiers' ``gain`` and ``gbw`` counted."""
+def derive_real(
+    sheet: Sheet, wanted: Container[str] | None = None, progress: Progress = silent
+) -> Derivation:
+    """Return the transfer functions as :func:`derive`, the amplifiers' ``gain`` and ``gbw`` counted."""
     circuit, gains = real_circuit(build_circuit(sheet))
-    return _derive(sheet, circuit, {**sheet.ties, **gains}, progress)
+    return _derive(sheet, circuit, {**sheet.ties, **gains}, wanted, progress)
 
 
-def _derive(sheet: Sheet, circuit: Circuit, ties: Mapping[str, Expression], progress: Progress) -> Derivation:
+def _derive(
+    sheet: Sheet,
+    circuit: Circuit,
+    ties: Mapping[str, Expression],
+    wanted: Container[str] | None,
+    progress: Progress,
+) -> Derivation:
     setups = tuple(build_setup(circuit, sheet.asks, ask) for ask in sheet.asks)
     refuse_structure(circuit, sheet.asks, setups)
     ties = {**ties, **loop_gains(build_circuit(sheet), setups)}
     answers: list[Answer] = []
     remarks = [*sheet.remarks, *bias_remarks(circuit, setups)]
     for ask, setup in zip(sheet.asks, setups, strict=True):
+        if wanted is not None and ask.name not in wanted:
+            continue
         progress(f"deriving {ask.name}")
         answer, found = _answer(circuit, ties, ask, setup, progress)
         answers.append(answer)

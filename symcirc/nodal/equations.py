@@ -223,17 +223,18 @@ class _Writer:
     def add_drives(self) -> None:
         drive = self.setup.drive
         for plus, minus in self.setup.shorts:
-            self.source(f"short.{plus}", plus, minus, f"{plus} is shorted", 0)
+            self.source(plus, minus, f"{plus} is shorted", 0)
         if isinstance(drive, VoltageDrive):
-            self.source(f"drive.{drive.plus}", drive.plus, drive.minus, f"the drive at {drive.plus}", 1)
+            self.source(drive.plus, drive.minus, f"the drive at {drive.plus}", 1)
         elif isinstance(drive, CurrentDrive):
             self.delivered[drive.node].append(Term(ONE, "drive"))
         else:
             self.drive_loop(drive.amplifier, drive.node)
 
-    def source(self, name: str, plus: str, minus: str, label: str, value: int) -> None:
+    def source(self, plus: str, minus: str, label: str, value: int) -> None:
         """An ideal source of ``value`` volts; its unknown current is the one it delivers into ``plus``."""
-        delivered = self.branch_current(current(name), minus, plus)
+        name = current(plus)
+        delivered = self.branch_current(current(plus, minus) if name in self.currents else name, minus, plus)
         self.delivered[plus].append(delivered)
         self.laws.append(Equation(label, self.across(ONE, plus, minus), value))
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from symcirc.nodal.equations import Equation, Term, Weight
+from symcirc.nodal.equations import Equation, Term
 
 #: How a weight of each kind stands before and behind what it multiplies, in plain arithmetic.
 PLAIN = {
@@ -21,6 +21,7 @@ PLAIN = {
 def equation_text(equation: Equation) -> str:
     """Return an equation in plain arithmetic, its first side a sum and its second 0 or the drive.
 
+    >>> from symcirc.nodal.equations import Weight
     >>> current = Term(Weight(1, "R", "R1"), "V_a", "V_in")
     >>> equation_text(Equation("currents at a", (current, Term(Weight(1, "C", "C1"), "V_a"))))
     '(V_a - V_in)/R1 + s*C1*V_a = 0'
@@ -62,6 +63,3 @@ def _sum(equation: Equation, write: Callable[[Term], str]) -> str:
     first, *rest = equation.terms
     text = ("-" if first.weight.sign < 0 else "") + write(first)
     return text + "".join((" - " if t.weight.sign < 0 else " + ") + write(t) for t in rest)
-
-
-__all__ = ["Equation", "Weight", "equation_latex", "equation_text"]
