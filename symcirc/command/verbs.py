@@ -1,0 +1,105 @@
+"""What each verb does: read, compute, write."""
+
+from __future__ import annotations
+
+import json
+import sys
+from argparse import Namespace
+from collections.abc import Callable, Iterable
+from pathlib import Path
+from typing import Any
+
+from symcirc.command.progress import ProgressLine
+from symcirc.complaints import Complaint, Place, Remark, Source, nearest
+from symcirc.sheet import Sheet, decode, read_sheet
+
+
+def read_file(path: str) -> Source:
+    """Return the text of a file, or of standard input for ``-``; raises Complaint where it cannot be read."""
+    if path == "-":
+        return decode(sys.stdin.buffer.read(), "standard input")
+    try:
+        data = Path(path).read_bytes()
+    except OSError as error:
+        nowhere = Place(1, 1, 2, Source(path, ""))
+        folder = Path(path).parent
+        sheets = [str(p) for p in folder.glob("*.stage")] if folder.is_dir() else []
+        reason = (error.strerror or "it cannot be read").lower()
+        mend = nearest(path, sheets) or "give the path of a stage sheet, or - for standard input"
+        raise Complaint(nowhere, f"the file cannot be read: {reason}", mend) from None
+    return decode(data, path)
+
+
+def derive(words: Namespace, progress: ProgressLine) -> int:
+    """Print the transfer functions of a sheet."""
+    from symcirc.derivation import derive as derive_ideal
+    from symcirc.derivation import derive_real
+
+    sheet = read_sheet(read_file(words.sheet))
+    wanted = _wanted(sheet, words.ask)
+    derivation = (derive_real if words.real else derive_ideal)(sheet, wanted, progress)
+    if words.json:
+        from symcirc.report.derive_json import derive_json, equations_json, values_json
+
+        write = values_json if words.values else equations_json if words.equations else derive_json
+        _print_json(write(derivation), progress)
+        return 0
+    from symcirc.report import derive_text as written
+
+    if words.equations:
+        lines = written.equations_latex(derivation) if words.latex else written.equations_text(derivation)
+    elif words.values:
+        lines = written.values_text(derivation)
+    else:
+        lines = written.derive_latex(derivation) if words.latex else written.derive_text(derivation)
+    _print_text(lines, derivation.remarks, progress)
+    return 0
+
+
+def match(words: Namespace, progress: ProgressLine) -> int:
+    """Print the design equations of a sheet's target; status 1 where it cannot be met."""
+    from symcirc.design import design
+
+    sheet = read_sheet(read_file(words.sheet))
+    found = design(sheet, words.ask, progress)
+    status = 0 if found.solutions else 1
+    if words.json:
+        from symcirc.report.match_json import match_json
+
+        _print_json(match_json(found), progress)
+        return status
+    from symcirc.report.match_text import match_latex, match_text
+
+    _print_text(match_latex(found) if words.latex else match_text(found), found.remarks, progress)
+    return status
+
+
+def _wanted(sheet: Sheet, ask: str | None) -> set[str] | None:
+    if ask is None:
+        return None
+    known = [a.name for a in sheet.asks]
+    if ask not in known:
+        raise Complaint(
+            sheet.asks[0].place,
+            f"nothing called `{ask}` is asked",
+            nearest(ask, known) or f"the asks are: {', '.join(known)}",
+        )
+    return {ask}
+
+
+def _print_json(answer: dict[str, Any], progress: ProgressLine) -> None:
+    text = json.dumps(answer, ensure_ascii=False, indent=2)
+    progress.clear()
+    print(text)
+
+
+def _print_text(lines: Iterable[str], remarks: Iterable[Remark], progress: ProgressLine) -> None:
+    """Print the whole answer at once, when nothing can go wrong any more, and the remarks on standard error."""
+    text = "\n".join(lines)
+    progress.clear()
+    print(text, flush=True)
+    for remark in remarks:
+        print(remark, file=sys.stderr)
+
+
+VERBS: dict[str, Callable[[Namespace, ProgressLine], int]] = {"derive": derive, "match": match}

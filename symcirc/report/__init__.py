@@ -1,0 +1,1 @@
+"""Answers written out: for people, for scripts (JSON) and for documents (LaTeX)."""

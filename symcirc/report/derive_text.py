@@ -1,0 +1,158 @@
+"""A derivation for people, in plain text and in LaTeX."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from symcirc.derivation import Answer, Derivation
+from symcirc.nodal.text import equation_latex, equation_text
+from symcirc.report.facts import Fact, facts_of
+from symcirc.report.numbers import numbers_for
+from symcirc.report.quantities import ask_text
+from symcirc.transfer.evaluate import coefficients
+from symcirc.transfer.form import Form
+from symcirc.transfer.latex import latex, latex_function, latex_name
+from symcirc.transfer.layout import WIDTH, broken, function_text
+from symcirc.transfer.standard import coefficient_forms, monic_forms
+from symcirc.transfer.text import text
+
+#: How the names of facts are written in LaTeX.
+FACT_LATEX = {
+    "w0": r"\omega_{0}",
+    "f0": "f_{0}",
+    "Q": "Q",
+    "pole w0": r"\omega_{0}",
+    "pole f0": "f_{0}",
+}
+
+
+def derive_text(derivation: Derivation) -> Iterator[str]:
+    """Yield the lines of a derivation: each ask's function, its standard form, and what is worth knowing of it."""
+    yield derivation.sheet.title
+    for answer in derivation.answers:
+        yield ""
+        yield from _answer(derivation, answer)
+
+
+def _answer(derivation: Derivation, answer: Answer) -> Iterator[str]:
+    function, name = answer.function, answer.ask.name
+    yield f"{ask_text(answer.ask)}"
+    yield ""
+    yield from _indented(function_text(coefficient_forms(function), f"{name}(s)", WIDTH - 2).splitlines())
+    if function.order:
+        yield ""
+        yield "standard form, by powers of s"
+        forms = monic_forms(function)
+        yield from _side("over", forms.numerator)
+        yield from _side("under", forms.denominator)
+    yield ""
+    yield from _facts(facts_of(derivation, answer))
+    evidence = answer.evidence
+    yield (
+        f"checked: agrees with the numeric solve of the circuit at {evidence.points} random points "
+        f"to {evidence.departure:.0e}"
+    )
+
+
+def _side(label: str, forms: tuple[Form, ...]) -> Iterator[str]:
+    """Yield the coefficients of one polynomial, highest power first, those that are zero left out."""
+    first = True
+    for power in reversed(range(len(forms))):
+        written = text(forms[power])
+        if written == "0" and len(forms) > 1:
+            continue
+        lines = broken(written, WIDTH - 16)
+        head = f"  {label if first else '':7}{_power(power):>4}   "
+        yield head + readable(lines[0])
+        yield from (" " * len(head) + readable(line) for line in lines[1:])
+        first = False
+
+
+def _power(power: int) -> str:
+    return {0: "1", 1: "s"}.get(power, f"s^{power}")
+
+
+def _facts(facts: list[Fact]) -> Iterator[str]:
+    """Yield facts as a table: what, in symbols, in numbers."""
+    if not facts:
+        return
+    wide = max(len(fact.what) for fact in facts)
+    for fact in facts:
+        symbols = readable(text(fact.form)) if fact.form is not None else ""
+        joined = " = ".join(piece for piece in (symbols, fact.number) if piece)
+        lines = broken(joined, WIDTH - wide - 5)
+        yield f"  {fact.what:{wide}}   {lines[0]}"
+        yield from (" " * (wide + 5) + line for line in lines[1:])
+    yield ""
+
+
+def readable(arithmetic: str) -> str:
+    """Return plain arithmetic as people write it on a terminal: ^ for powers."""
+    return arithmetic.replace("**", "^")
+
+
+def _indented(lines: list[str]) -> Iterator[str]:
+    return ("  " + readable(line) for line in lines)
+
+
+def values_text(derivation: Derivation) -> Iterator[str]:
+    """Yield the coefficients for the fixed numbers, by powers of s; raises Complaint where one is missing."""
+    yield derivation.sheet.title
+    for answer in derivation.answers:
+        sides = coefficients(answer.function, numbers_for(derivation.sheet, answer))
+        yield ""
+        yield ask_text(answer.ask)
+        for label, side in zip(("over", "under"), sides, strict=True):
+            for power in reversed(range(len(side))):
+                yield f"  {label if power == len(side) - 1 else '':7}{_power(power):>4}   {side[power]!r}"
+
+
+def equations_text(derivation: Derivation) -> Iterator[str]:
+    """Yield the nodal equations that every answer is solved from."""
+    yield derivation.sheet.title
+    for answer in derivation.answers:
+        equations = answer.system.equations
+        wide = max(len(equation.label) for equation in equations)
+        yield ""
+        yield f"{ask_text(answer.ask)}: currents leaving each node, and the law of each source and device"
+        for equation in equations:
+            lines = broken(equation_text(equation), WIDTH - wide - 5)
+            yield f"  {equation.label:{wide}}   {lines[0]}"
+            yield from (" " * (wide + 5) + line for line in lines[1:])
+        yield from _tied(derivation)
+
+
+def _tied(derivation: Derivation) -> Iterator[str]:
+    names = [name for name in derivation.ties if name in derivation.sheet.fixes]
+    if names:
+        yield f"  tied by the sheet and put in afterwards: {', '.join(names)}"
+
+
+def derive_latex(derivation: Derivation) -> Iterator[str]:
+    """Yield a LaTeX display for each ask: the function, its standard form, and its facts in symbols."""
+    for answer in derivation.answers:
+        name, function = latex_name(answer.ask.name), answer.function
+        yield f"% {ask_text(answer.ask)}"
+        rows = [f"{name}(s) &= {latex_function(coefficient_forms(function))}"]
+        if function.order:
+            rows.append(f"{name}(s) &= {latex_function(monic_forms(function))}")
+        for fact in facts_of(derivation, answer):
+            if fact.form is not None:
+                label = FACT_LATEX.get(fact.what) or r"\text{" + fact.what + "}"
+                rows.append(f"{label} &= {latex(fact.form)}")
+        yield from _aligned(rows)
+
+
+def equations_latex(derivation: Derivation) -> Iterator[str]:
+    """Yield the nodal equations of every answer in LaTeX."""
+    for answer in derivation.answers:
+        yield f"% {ask_text(answer.ask)}"
+        equations = answer.system.equations
+        yield from _aligned([equation_latex(e, latex_name).replace(" = ", " &= ", 1) for e in equations])
+
+
+def _aligned(rows: list[str]) -> Iterator[str]:
+    yield r"\begin{align*}"
+    yield from (f"  {row} \\\\" for row in rows[:-1])
+    yield f"  {rows[-1]}"
+    yield r"\end{align*}"
