@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import Any
 
 import sympy
 
@@ -11,25 +12,30 @@ from symcirc.complaints import Complaint, Remark, nearest
 from symcirc.derivation import Answer, Derivation, Progress, derive
 from symcirc.elimination.solve import silent
 from symcirc.goal import Goal, build_goal, symbol, target_symbols
-from symcirc.match import Branch, Problem, Refusal, solve_match
+from symcirc.match.problem import Branch, Problem, Refusal
+from symcirc.match.solve import solve
 from symcirc.proof import prove
 from symcirc.sheet.exact import exact_number
 from symcirc.sheet.expression import names
 from symcirc.sheet.fixes import tie_order
 from symcirc.sheet.model import Sheet, Target
 from symcirc.transfer.function import symbols_in
+from symcirc.transfer.ties import natural_key
 
 
 @dataclass(frozen=True)
 class Solution:
     """A branch of the match with the values of every part that has one, in SI base units.
 
-    ``proved`` tells that the values, or random ones of the symbols, gave the target in the numeric solve.
+    ``sign`` is that of the stage's gain against the target's, as the numeric solve of the circuit showed it with
+    these values, or with random ones of the symbols; 0 where no values were found for that proof. ``gain`` is the
+    nominal gain that the stage gives, sign included, where the target's is a number.
     """
 
     branch: Branch
     values: Mapping[str, float]
-    proved: bool
+    sign: int
+    gain: float | None
 
 
 @dataclass(frozen=True)
@@ -56,7 +62,12 @@ def design(sheet: Sheet, ask: str | None = None, progress: Progress = silent) ->
     answer = derivation.answer(target.ask)
     goal = build_goal(sheet, target)
     problem = build_problem(sheet, answer, goal)
-    outcome = solve_match(problem, progress)
+
+    def keep_going() -> bool:
+        progress("solving the design equations")
+        return False
+
+    outcome = solve(problem, should_stop=keep_going)
     if isinstance(outcome, Refusal):
         if outcome.kind in ("many", "target"):
             raise Complaint(target.place, outcome.cause, outcome.mend)
@@ -140,7 +151,7 @@ def _solution(
     derivation: Derivation, answer: Answer, goal: Goal, problem: Problem, branch: Branch
 ) -> Solution:
     sheet = derivation.sheet
-    proved = prove(derivation, answer, goal, branch, sheet.numbers)
+    factor = prove(derivation, answer, goal, branch, sheet.numbers)
     exact: dict[str, sympy.Expr] = dict(sheet.numbers)
     exact |= {name: sympy.Float(value, 17) for name, value in branch.values.items() if value is not None}
     for name, expression in problem.positives.items():
@@ -148,4 +159,13 @@ def _solution(
         if value.is_number:
             exact[name] = value
     parts = [name for name, s in sheet.symbols.items() if s.role == "part" or name in branch.values]
-    return Solution(branch, {name: float(exact[name]) for name in parts if name in exact}, proved)
+    values = {name: float(exact[name]) for name in sorted(parts, key=natural_key) if name in exact}
+    sign = 0 if factor is None else 1 if factor > 0 else -1
+    return Solution(branch, values, sign, _gain(goal, branch, factor))
+
+
+def _gain(goal: Goal, branch: Branch, factor: Any) -> float | None:
+    """Return the nominal gain of the stage, where it is a number and was not found at random values."""
+    if factor is None or goal.nominal is None or goal.nominal.free_symbols or None in branch.values.values():
+        return None
+    return float(factor * sympy.N(goal.nominal, 20))

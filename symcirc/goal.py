@@ -8,6 +8,7 @@ from dataclasses import dataclass
 import sympy
 
 from symcirc.complaints import Complaint
+from symcirc.match.problem import Gain
 from symcirc.responses import (
     FAMILIES,
     Response,
@@ -25,6 +26,8 @@ from symcirc.sheet.expression import Expression, Name, names
 from symcirc.sheet.model import Sheet, Target, Value
 
 Coefficients = tuple[sympy.Expr, ...]
+#: A gain in dB beyond this is refused: its ratio would be out of the range of numbers.
+MOST_DECIBELS = 400
 
 
 @dataclass(frozen=True)
@@ -32,13 +35,14 @@ class Goal:
     """A target as numerator and monic denominator, ascending powers of s in rad/s.
 
     Coefficients are exact numbers, or expressions in parameters of the sheet (positive symbols). ``gain`` says how
-    the numerator is meant: "exact" with sign and size, "magnitude" with its size alone, "free" as a shape.
+    the numerator is meant: "exact" with sign and size, "magnitude" with its size alone, "free" as a shape whose
+    nominal gain is 1. ``nominal`` is the nominal gain, None for an expression.
     """
-
     target: Target
     numerator: Coefficients
     denominator: Coefficients
-    gain: str
+    gain: Gain
+    nominal: sympy.Expr | None
 
 
 def build_goal(sheet: Sheet, target: Target) -> Goal:
@@ -57,9 +61,9 @@ def build_goal(sheet: Sheet, target: Target) -> Goal:
     except ResponseError as error:
         raise Complaint(target.place, error.cause, error.mend) from None
     gain = target.words.get("gain")
-    factor = sympy.Integer(1) if gain is None else _positive("gain", gain)
+    factor = sympy.Integer(1) if gain is None else _gain(gain)
     numerator = tuple(factor * c for c in response.numerator)
-    return Goal(target, numerator, response.denominator, "free" if gain is None else "magnitude")
+    return Goal(target, numerator, response.denominator, "free" if gain is None else "magnitude", factor)
 
 
 def _response(target: Target) -> Response:
@@ -113,7 +117,17 @@ def _positive(word: str, value: Value) -> sympy.Expr:
     number = _number(word, value)
     if number.is_number and not number.is_positive:
         raise Complaint(value.place, f"`{word}` must be greater than zero", f"give a positive {word}")
-    return sympy.Integer(10) ** (number / 20) if value.unit == "dB" and word == "gain" else number
+    return number
+
+
+def _gain(value: Value) -> sympy.Expr:
+    """Return a gain as a ratio; in dB it may have either sign, but no size beyond reason."""
+    number = _number("gain", value)
+    if value.unit != "dB":
+        return _positive("gain", value)
+    if number.is_number and abs(number) > MOST_DECIBELS:
+        raise Complaint(value.place, "this gain is out of range", f"use a gain within {MOST_DECIBELS} dB")
+    return sympy.Integer(10) ** (number / 20)
 
 
 def _number(word: str, value: Value) -> sympy.Expr:
@@ -141,7 +155,7 @@ def _written(target: Target, expression: Expression) -> Goal:
     denominator = tuple(sympy.cancel(c / leading) for c in reversed(under.all_coeffs()))
     if len(denominator) == 1 and len(numerator) == 1 and numerator[0] == 0:
         raise Complaint(target.place, "this target is zero", "write the ratio that the ask must become")
-    return Goal(target, numerator, denominator, "exact")
+    return Goal(target, numerator, denominator, "exact", None)
 
 
 def target_symbols(target: Target) -> list[Name]:

@@ -12,7 +12,7 @@ import sympy
 from symcirc.complaints import InternalFault
 from symcirc.derivation import Answer, Derivation
 from symcirc.goal import Goal
-from symcirc.match import Branch, Root
+from symcirc.match.problem import Branch, Root
 from symcirc.transfer.function import symbols_in
 from symcirc.witness.agree import precise_ratio
 
@@ -30,8 +30,8 @@ def prove(
     """Compare the circuit with the target at three frequencies, each part at its value.
 
     ``known`` are the numbers of the sheet. Where symbols are left, they get random values at which the branch is
-    real and positive; False is returned where no such values are found. Raises InternalFault where the circuit
-    does not give the target.
+    real and positive. Returns by what factor the circuit's ratio is larger than the target (1 or -1 but for a free
+    gain), or None where no such values are found. Raises InternalFault where the circuit does not give the target.
     """
     symbols = symbols_in(answer.function) | {
         str(x) for c in (*goal.numerator, *goal.denominator) for x in c.free_symbols
@@ -43,11 +43,10 @@ def prove(
         for _ in range(TRIES if missing else 1):
             values = {name: mpmath.mpf(sympy.N(number, 40)) for name, number in known.items()}
             values |= {name: _random_value(derivation, name, generator) for name in missing}
-            values_or_none = _follow(branch, values)
-            if values_or_none is not None:
-                _compare(derivation, answer, goal, values_or_none)
-                return True
-    return False
+            followed = _follow(branch, values)
+            if followed is not None:
+                return _compare(derivation, answer, goal, followed)
+    return None
 
 
 def _random_value(derivation: Derivation, name: str, generator: random.Random) -> Any:
@@ -94,7 +93,7 @@ def _root(root: Root, values: Mapping[str, Any]) -> Any:
     return positive[max(root.index, 1) - 1] if len(positive) >= max(root.index, 1) else None
 
 
-def _compare(derivation: Derivation, answer: Answer, goal: Goal, values: dict[str, Any]) -> None:
+def _compare(derivation: Derivation, answer: Answer, goal: Goal, values: dict[str, Any]) -> Any:
     numerator = [_number(c, values) for c in goal.numerator]
     denominator = [_number(c, values) for c in goal.denominator]
     order = len(denominator) - 1
@@ -112,6 +111,7 @@ def _compare(derivation: Derivation, answer: Answer, goal: Goal, values: dict[st
         raise InternalFault(
             f"a solution for {goal.target.ask} departs from the target by {float(departure):.3g} in the numeric solve"
         )
+    return mpmath.re(factors[0])
 
 
 def _polynomial(coefficients: list[Any], s: Any) -> Any:

@@ -1,0 +1,130 @@
+"""The sentences that say why a target is not met."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping, Sequence
+from typing import Any
+
+import sympy
+
+from symcirc.complaints import listed
+from symcirc.match.candidates import Candidate
+from symcirc.match.claims import Claim
+from symcirc.match.counting import Count, groups_to_choose
+from symcirc.match.decimals import reals
+from symcirc.match.engineering import engineering
+from symcirc.match.formula import condition_text, equation_text
+from symcirc.match.inequalities import condition
+from symcirc.match.problem import Condition, Problem, Refusal
+from symcirc.match.quantities import Quantities, holds_any
+from symcirc.match.screening import name_of, partner_of
+from symcirc.match.system import Coefficient, System
+
+_WRONG = {">": "is not more than", ">=": "is less than", "<": "is not less than", "<=": "is more than"}
+
+
+def too_many(system: System, found: Count, problem: Problem) -> Refusal:
+    """Return the refusal of a problem with more unknowns than the target can set."""
+    surplus = len(problem.unknowns) - found.rank
+    groups = groups_to_choose(system, found, problem.units)
+    offered = "; or ".join(listed(group) for group in groups[:4])
+    values = "value" if found.rank == 1 else "values"
+    return Refusal(
+        "many",
+        f"the target sets {found.rank} {values}, and {len(problem.unknowns)} parts are free: "
+        f"{listed(problem.unknowns)}",
+        f"choose {surplus} of them: {offered}" if groups else f"choose {surplus} of them",
+        groups,
+    )
+
+
+def left_open(names: Sequence[str]) -> Refusal:
+    """Return the refusal of a problem whose equations leave parts open."""
+    groups = tuple((name,) for name in names)
+    return Refusal(
+        "many", f"the target leaves {listed(names)} open", f"choose {listed(names, last='or')}", groups
+    )
+
+
+def too_few(coefficients: Iterable[Coefficient], system: System, found: Count, problem: Problem) -> Refusal:
+    """Return the refusal of a problem in which some coefficients follow from others and miss their targets."""
+    order = problem.function.order
+    names = [
+        name_of(c, partner_of(c, system, found.references[-1 if c.where == "numerator" else 0]), order)
+        for c in coefficients
+    ]
+    verb = "follow" if len(names) > 1 else "follows"
+    free = listed(problem.unknowns) if problem.unknowns else "nothing"
+    return Refusal(
+        "few",
+        f"{listed(names)} {verb} from the others and cannot be met: only {free} can be solved for",
+        "leave more parts to be solved for, or untie parts that are tied together",
+    )
+
+
+def contradiction(problem: Problem) -> Refusal:
+    """Return the refusal of a problem whose equations contradict each other."""
+    return Refusal(
+        "few",
+        f"no positive values of {listed(problem.unknowns)} give all coefficients of the target together",
+        "leave other parts to be solved for, or ask for another target",
+    )
+
+
+def no_branch(
+    failed: Sequence[tuple[Candidate, Sequence[Claim] | None]], problem: Problem, quantities: Quantities
+) -> Refusal:
+    """Return the refusal of numbers that no candidate is real and positive for.
+
+    Args:
+        failed: the candidates, each with its claims (None where it is never positive).
+        problem: for units and numbers.
+        quantities: the ring.
+    """
+    unmet = []
+    for candidate, claims in failed:
+        values = [reals.mpf(0) if v is None else v for v in candidate.values]
+        missed = [claim for claim in claims or () if not claim.is_met(values)]
+        if missed and not any(holds_any(f, quantities.unknowns) for f in missed[0].factors):
+            unmet.append((len(missed), missed[0], candidate))
+    if unmet:
+        _, claim, candidate = min(unmet, key=lambda entry: entry[0])
+        violated = condition(claim, quantities)
+        return Refusal(
+            "negative",
+            violation(violated, _numbers(candidate, quantities), problem.units),
+            f"choose values with {condition_text(violated)}",
+            condition=violated,
+        )
+    candidate = failed[0][0]
+    form = candidate.forms[len(candidate.choices) - 1]
+    name, value = quantities.name(form.unknown), candidate.values[form.unknown]
+    if value is None or reals.isnan(value):
+        cause = f"the equation for {name} has no positive root for these numbers"
+    else:
+        cause = f"{name} would have to be {engineering(float(value), problem.units.get(name, ''))}"
+    return Refusal("negative", cause, "choose other values, or leave other parts to be solved for")
+
+
+def _numbers(candidate: Candidate, quantities: Quantities) -> dict[str, Any]:
+    return {str(quantities.meanings[k]): v for k, v in enumerate(candidate.values) if v is not None}
+
+
+def violation(violated: Condition, numbers: Mapping[str, Any], units: Mapping[str, str]) -> str:
+    """Return the sentence that says by which numbers a condition is violated.
+
+    >>> C1, C2 = sympy.symbols("C1 C2")
+    >>> violation(Condition(C1, ">=", 2 * C2), {"C1": 1e-8, "C2": 2.2e-8}, {"C1": "F", "C2": "F"})
+    'C1 = 10 nF is less than 2*C2 = 44 nF'
+    """
+    unit = units.get(str(violated.left), "") if violated.left.is_Symbol else ""
+    sides = [_side(side, numbers, unit) for side in (violated.left, violated.right)]
+    return f"{sides[0]} {_WRONG[violated.relation]} {sides[1]}"
+
+
+def _side(expression: sympy.Expr, numbers: Mapping[str, Any], unit: str) -> str:
+    replaced = {s: sympy.Float(float(numbers[str(s)])) for s in expression.free_symbols if str(s) in numbers}
+    value = expression.evalf(subs=replaced)
+    if not expression.free_symbols:
+        return engineering(float(value), unit)
+    return f"{equation_text(expression)} = {engineering(float(value), unit)}"

@@ -1,0 +1,159 @@
+"""Real roots of polynomials with real coefficients in decimals: how many there are, and where.
+
+They are counted with Sturm's sequence (C. Sturm, "Mémoire sur la résolution des équations numériques", 1829, from
+memory), in exact arithmetic on the coefficients as they are given, to 60 digits and more. A remainder whose
+coefficients are all below 1e-50 of those it came from counts as zero: the sequence then ends in the factor of the
+roots that are multiple, and each of these counts once.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from fractions import Fraction
+from typing import Any
+
+from symcirc.match.decimals import as_fraction, reals
+
+#: What counts as zero beside 1.
+_ZERO = Fraction(1, 10**50)
+
+Polynomial = list[Fraction]  # ascending powers, the last one not zero
+
+
+def positive_roots(coefficients: Sequence[Any]) -> list[Any]:
+    """Return the positive roots of a polynomial, rising, multiple ones once.
+
+    Args:
+        coefficients: decimals, ascending powers.
+
+    >>> [reals.nstr(root, 70) for root in positive_roots([reals.mpf(c) for c in (-6, 11, -6, 1)])]
+    ['1.0', '2.0', '3.0']
+    >>> positive_roots([reals.mpf(c) for c in (1, -2, 1)])
+    [mpf('1.0')]
+    """
+    kept = list(coefficients)
+    while kept and not kept[-1]:
+        kept.pop()
+    while kept and not kept[0]:
+        kept.pop(0)
+    if len(kept) < 2:
+        return []
+    size = reals.root(abs(kept[0] / kept[-1]), len(kept) - 1)  # the geometric mean of the sizes of the roots
+    scaled = _normal([as_fraction(c * size**k) for k, c in enumerate(kept)])
+    sequence = sturm_sequence(scaled)
+    if len(sequence[-1]) > 1:  # the factor of the multiple roots
+        scaled = _normal(_divided(scaled, sequence[-1])[0])
+        sequence = sturm_sequence(scaled)
+    decimals = [reals.mpf(c.numerator) / c.denominator for c in scaled]
+    return [size * _refined(decimals, low, high) for low, high in _isolated(sequence)]
+
+
+def real_roots(coefficients: Sequence[Any]) -> list[Any]:
+    """Return all real roots of a polynomial, rising, multiple ones once.
+
+    >>> [reals.nstr(root, 70) for root in real_roots([reals.mpf(c) for c in (0, -1, 0, 1)])]
+    ['-1.0', '0.0', '1.0']
+    """
+    mirrored = [c * (-1) ** k for k, c in enumerate(coefficients)]
+    zero = [] if coefficients[0] else [reals.mpf(0)]
+    return [-r for r in reversed(positive_roots(mirrored))] + zero + positive_roots(coefficients)
+
+
+def sturm_sequence(polynomial: Polynomial) -> list[Polynomial]:
+    """Return Sturm's sequence of a polynomial whose largest coefficient is of size 1.
+
+    >>> [[int(c) for c in p] for p in sturm_sequence([Fraction(c) for c in (1, 0, -1)])]
+    [[1, 0, -1], [0, -1], [-1]]
+    """
+    sequence = [polynomial, _normal([k * c for k, c in enumerate(polynomial)][1:])]
+    while len(sequence[-1]) > 1:
+        rest = _divided(sequence[-2], sequence[-1])[1]
+        while rest and abs(rest[-1]) <= _ZERO:
+            rest.pop()
+        if not rest:
+            break
+        sequence.append(_normal([-c for c in rest]))
+    return sequence
+
+
+def _normal(polynomial: Polynomial) -> Polynomial:
+    """Divide by the size of the largest coefficient."""
+    largest = max(map(abs, polynomial))
+    return [c / largest for c in polynomial]
+
+
+def _divided(one: Polynomial, other: Polynomial) -> tuple[Polynomial, Polynomial]:
+    """Return quotient and remainder; the remainder's leading coefficients may be zero."""
+    rest, quotient = list(one), []
+    for shift in range(len(one) - len(other), -1, -1):
+        factor = rest[-1] / other[-1]
+        quotient.append(factor)
+        for k, c in enumerate(other):
+            rest[k + shift] -= factor * c
+        rest.pop()
+    return quotient[::-1], rest
+
+
+def _value(polynomial: Polynomial, x: Fraction) -> Fraction:
+    total = Fraction(0)
+    for c in reversed(polynomial):
+        total = total * x + c
+    return total
+
+
+def _changes(sequence: list[Polynomial], x: Fraction) -> int:
+    """Return the number of changes of sign along the sequence at ``x``."""
+    signs = [v > 0 for v in (_value(p, x) for p in sequence) if v]
+    return sum(a != b for a, b in zip(signs, signs[1:], strict=False))
+
+
+def _isolated(sequence: list[Polynomial]) -> list[tuple[Fraction, Fraction]]:
+    """Return, for each positive root, an interval open below that holds it alone."""
+    bound = 1 + max(map(abs, sequence[0][:-1])) / abs(sequence[0][-1])  # Cauchy's bound
+    waiting = [(Fraction(0), _changes(sequence, Fraction(0)), bound, _changes(sequence, bound))]
+    intervals = []
+    while waiting:
+        low, at_low, high, at_high = waiting.pop()
+        if at_low - at_high == 1:
+            intervals.append((low, high))
+        elif at_low > at_high:
+            middle = (low + high) / 2
+            at_middle = _changes(sequence, middle)
+            waiting += [(middle, at_middle, high, at_high), (low, at_low, middle, at_middle)]
+    return intervals
+
+
+def _refined(coefficients: list[Any], low: Fraction, high: Fraction) -> Any:
+    """Return the root in an interval that holds one, to the working precision, by halving it."""
+    below, above = (reals.mpf(x.numerator) / x.denominator for x in (low, high))
+    falling = coefficients[::-1]
+    side = reals.sign(reals.polyval(falling, above))
+    if not side:
+        return above
+    for _ in range(reals.prec + 8):
+        middle = (below + above) / 2
+        sign = reals.sign(reals.polyval(falling, middle))
+        if not sign:
+            return middle
+        if sign == side:
+            above = middle
+        else:
+            below = middle
+    return (below + above) / 2
+
+
+def complex_roots(coefficients: Sequence[Any]) -> list[Any]:
+    """Return all roots of a polynomial with complex coefficients, ascending powers, the last one not zero.
+
+    >>> [reals.nstr(root, 5) for root in complex_roots([reals.mpf(4), reals.mpf(0), reals.mpf(1)])]
+    ['(0.0 - 2.0j)', '(0.0 + 2.0j)']
+    """
+    degree = len(coefficients) - 1
+    if degree == 1:
+        return [-coefficients[0] / coefficients[1]]
+    if not coefficients[0]:
+        return [reals.mpf(0), *complex_roots(coefficients[1:])]
+    size = reals.root(abs(coefficients[0] / coefficients[-1]), degree)
+    scaled = [c * size**k for k, c in enumerate(coefficients)]
+    falling = [c / scaled[-1] for c in reversed(scaled)]
+    return [size * root for root in reals.polyroots(falling, maxsteps=200, extraprec=200)]

@@ -1,0 +1,29 @@
+"""What the ways to write a match share."""
+
+from __future__ import annotations
+
+from symcirc.complaints import Remark
+from symcirc.design import Design
+from symcirc.transfer.function import symbols_in
+from symcirc.transfer.latex import latex_name
+from symcirc.transfer.ties import natural_key
+
+
+def chosen_names(design: Design) -> list[str]:
+    """Return the names that stand as given in the design equations: fixed or chosen, in natural order."""
+    present = symbols_in(design.answer.function)
+    targets = (*design.goal.numerator, *design.goal.denominator)
+    present |= {str(symbol) for coefficient in targets for symbol in coefficient.free_symbols}
+    names = [n for n in design.derivation.sheet.symbols if n in present and n not in design.problem.unknowns]
+    return sorted(names, key=natural_key)
+
+
+def refusal_remark(design: Design) -> Remark:
+    """Return why there is no solution, at the target's place."""
+    assert design.refusal is not None
+    return Remark(design.goal.target.place, f"{design.refusal.cause}; {design.refusal.mend}")
+
+
+def latex_label(part: str) -> str:
+    """Return a part's name in LaTeX."""
+    return latex_name(part)
