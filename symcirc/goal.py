@@ -38,6 +38,7 @@ class Goal:
     the numerator is meant: "exact" with sign and size, "magnitude" with its size alone, "free" as a shape whose
     nominal gain is 1. ``nominal`` is the nominal gain, None for an expression.
     """
+
     target: Target
     numerator: Coefficients
     denominator: Coefficients
@@ -69,7 +70,7 @@ def build_goal(sheet: Sheet, target: Target) -> Goal:
 def _response(target: Target) -> Response:
     words = target.words
     if target.family is None:
-        return second_order(target.kind, _frequency("f0", words["f0"]), _positive("q", words["q"]))
+        return second_order(str(target.kind), _frequency("f0", words["f0"]), _positive("q", words["q"]))
     family = FAMILIES.get(target.family)
     if family is None:
         ready = ", ".join(FAMILIES)

@@ -18,6 +18,8 @@ from symcirc.witness.agree import precise_ratio
 
 #: The largest relative departure from the target that is taken for rounding of a solution's values.
 TOLERANCE = 1e-9
+#: How many digits the proof is computed with.
+DIGITS = 40
 #: How many random choices of the symbols are tried before a branch is left unproved.
 TRIES = 200
 #: Where random values of symbols lie, by unit: the decades of ordinary stages.
@@ -25,28 +27,49 @@ DECADES = {"ohm": (3, 5), "F": (-9, -7), "H": (-3, -1), "S": (-5, -3), "Hz": (2,
 
 
 def prove(
-    derivation: Derivation, answer: Answer, goal: Goal, branch: Branch, known: Mapping[str, Any]
-) -> bool:
+    derivation: Derivation, answer: Answer, goal: Goal, branch: Branch, known: Mapping[str, sympy.Expr]
+) -> Any:
     """Compare the circuit with the target at three frequencies, each part at its value.
 
     ``known`` are the numbers of the sheet. Where symbols are left, they get random values at which the branch is
     real and positive. Returns by what factor the circuit's ratio is larger than the target (1 or -1 but for a free
     gain), or None where no such values are found. Raises InternalFault where the circuit does not give the target.
     """
-    symbols = symbols_in(answer.function) | {
-        str(x) for c in (*goal.numerator, *goal.denominator) for x in c.free_symbols
-    }
+    targets = (*goal.numerator, *goal.denominator)
+    symbols = symbols_in(answer.function) | {str(x) for c in targets for x in c.free_symbols}
     solved = {equation.part for equation in branch.equations}
     missing = sorted(symbols - set(known) - solved - {"pi"})
+    with mpmath.workdps(DIGITS):
+        numbers = {name: _number(number, {}) for name, number in known.items()}
+        if missing:
+            return _prove_somewhere(derivation, answer, goal, branch, numbers, missing)
+        values = {name: mpmath.mpf(value) for name, value in branch.values.items() if value is not None}
+        _agree(_follow(branch, numbers), values, goal)
+        return _compare(derivation, answer, goal, {**numbers, **values})
+
+
+def _prove_somewhere(
+    derivation: Derivation,
+    answer: Answer,
+    goal: Goal,
+    branch: Branch,
+    numbers: dict[str, Any],
+    missing: list[str],
+) -> Any:
     generator = random.Random(1)  # seeded: the same proof on every run
-    with mpmath.workdps(40):
-        for _ in range(TRIES if missing else 1):
-            values = {name: mpmath.mpf(sympy.N(number, 40)) for name, number in known.items()}
-            values |= {name: _random_value(derivation, name, generator) for name in missing}
-            followed = _follow(branch, values)
-            if followed is not None:
-                return _compare(derivation, answer, goal, followed)
+    for _ in range(TRIES):
+        chosen = {name: _random_value(derivation, name, generator) for name in missing}
+        followed = _follow(branch, {**numbers, **chosen})
+        if followed is not None:
+            return _compare(derivation, answer, goal, followed)
     return None
+
+
+def _agree(followed: dict[str, Any] | None, values: dict[str, Any], goal: Goal) -> None:
+    """The printed equations, computed in their order, must give the printed values."""
+    wrong = followed is None or any(abs(followed[n] / v - 1) > TOLERANCE for n, v in values.items())
+    if wrong:
+        raise InternalFault(f"the design equations for {goal.target.ask} do not give the values found")
 
 
 def _random_value(derivation: Derivation, name: str, generator: random.Random) -> Any:
@@ -80,8 +103,8 @@ def _follow(branch: Branch, values: dict[str, Any]) -> dict[str, Any] | None:
 
 
 def _number(formula: sympy.Expr, values: Mapping[str, Any]) -> Any:
-    substituted = formula.xreplace({x: sympy.Float(values[str(x)], 40) for x in formula.free_symbols})
-    return mpmath.mpmathify(sympy.N(substituted, 40))
+    substituted = formula.xreplace({x: sympy.Float(values[str(x)], DIGITS) for x in formula.free_symbols})
+    return mpmath.mpmathify(sympy.N(substituted, DIGITS))
 
 
 def _root(root: Root, values: Mapping[str, Any]) -> Any:

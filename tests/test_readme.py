@@ -25,7 +25,12 @@ def test_a_session_shown_is_what_the_program_prints(command_and_output):
     command, shown = command_and_output
     path = f"{Path(sys.executable).parent}:{os.environ['PATH']}"
     done = subprocess.run(
-        ["sh", "-c", command], cwd=ROOT, env={**os.environ, "PATH": path}, capture_output=True, text=True, check=False
+        ["sh", "-c", command],
+        cwd=ROOT,
+        env={**os.environ, "PATH": path},
+        capture_output=True,
+        text=True,
+        check=False,
     )
     assert done.stdout + done.stderr == shown
 

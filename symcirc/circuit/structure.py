@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections import defaultdict
 from collections.abc import Iterator
 
@@ -169,7 +170,7 @@ def _fight(circuit: Circuit, setup: Setup) -> Complaint | None:
     for name, place, (plus, minus) in _set_voltages(circuit, setup):
         if plus == minus or nx.has_path(joined, plus, minus):
             path = [] if plus == minus else nx.shortest_path(joined, plus, minus)
-            others = sorted({joined.edges[a, b]["name"] for a, b in zip(path, path[1:], strict=False)})
+            others = sorted({joined.edges[a, b]["name"] for a, b in itertools.pairwise(path)})
             return Complaint(
                 place,
                 f"{listed([name, *others])} form a loop of ideal voltage sources: they fight",

@@ -66,7 +66,7 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     return parser.parse_args(arguments)
 
 
-def _verb(verbs: "argparse._SubParsersAction[Words]", name: str, summary: str, description: str) -> Words:
+def _verb(verbs: argparse._SubParsersAction[Words], name: str, summary: str, description: str) -> Words:
     verb = verbs.add_parser(
         name, help=summary, description=description, formatter_class=argparse.RawDescriptionHelpFormatter
     )

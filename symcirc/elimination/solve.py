@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 
 from sympy.polys.domains import ZZ
 from sympy.polys.orderings import lex
@@ -23,21 +23,28 @@ def silent(line: str) -> None:
 def solve(system: System, progress: Callable[[str], None] = silent) -> Ratio | None:
     """Return the asked ratio ``over / under`` of a nodal system, or None where the equations are singular.
 
-    Where ``under`` is zero whatever the drive is, the ratio's denominator is empty. By Cramer's rule over the integers, in one ring generator for the weight of each part, so that no entry is a
-    fraction; the weights turn into powers of the parts and of s at the end.
+    Where ``under`` is zero whatever the drive is, the ratio's denominator is empty. By Cramer's rule over the
+    integers, in one ring generator for the weight of each part, so that no entry is a fraction; the weights turn
+    into powers of the parts and of s at the end.
     """
     weights = _weights(system)
     names = list(weights)
     ring = PolyRing(names or ["one"], ZZ, lex)
     generators = dict(zip(names, ring.gens, strict=False))
-    over = _answer(system, system.over, ring, generators, progress)
-    under = _answer(system, system.under, ring, generators, progress)
-    determinant = over[1]
-    if not determinant:
+    columns = {unknown: k for k, unknown in enumerate(system.unknowns)}
+    over, under = (_row(_undriven(asked), columns, ring, generators) for asked in (system.over, system.under))
+    rows = [_row(equation.terms, columns, ring, generators) for equation in system.equations]
+    size = len(columns)
+    for row, equation in zip(rows, system.equations, strict=True):
+        if equation.right:
+            row[size] = ring(equation.right)
+    minors = maximal_minors(rows, size + 1, ring, {size, *over, *under}, progress)
+    determinant = minors.get(size)
+    if determinant is None:
         return None
-    if not under[0]:
-        return Ratio(tuple(names), (), ())
-    return _ratio(over[0], under[0], weights)
+    numerator = _value(over, minors, size) + determinant * _driven(system.over)
+    denominator = _value(under, minors, size) + determinant * _driven(system.under)
+    return _ratio(numerator, denominator, weights) if denominator else Ratio(tuple(names), (), ())
 
 
 def _weights(system: System) -> dict[str, str]:
@@ -46,33 +53,26 @@ def _weights(system: System) -> dict[str, str]:
     return {t.weight.symbol: t.weight.kind for t in terms if t.weight.symbol}
 
 
-def _answer(
-    system: System,
-    asked: tuple[Term, ...],
-    ring: PolyRing,
-    generators: dict[str, PolyElement],
-    progress: Callable[[str], None],
-) -> tuple[PolyElement, PolyElement]:
-    """Return (numerator, determinant) of one asked quantity as the drive's size is 1.
+def _undriven(asked: tuple[Term, ...]) -> list[Term]:
+    return [term for term in asked if term.plus != "drive"]
+
+
+def _driven(asked: tuple[Term, ...]) -> int:
+    """Return how often the drive's own current, whose size is 1, stands in what is asked."""
+    return sum(1 for term in asked if term.plus == "drive")
+
+
+def _value(wanted: dict[int, PolyElement], minors: dict[int, PolyElement], size: int) -> PolyElement:
+    """Return an asked quantity times the determinant, as the drive's size is 1.
 
     With the right side as one column more, x_k = (-1)^(n-1-k) M_k / M_n, where M_k is the minor without column k.
     """
-    columns = {unknown: k for k, unknown in enumerate(system.unknowns)}
-    size = len(columns)
-    rows: list[dict[int, PolyElement]] = []
-    for equation in system.equations:
-        row = _row(equation.terms, columns, ring, generators)
-        if equation.right:
-            row[size] = ring(equation.right)
-        rows.append(row)
-    wanted = _row([t for t in asked if t.plus != "drive"], columns, ring, generators)
-    minors = maximal_minors(rows, size + 1, ring, {size, *wanted}, progress)
-    determinant = minors.get(size, ring.zero)
-    numerator = determinant * sum(1 for t in asked if t.plus == "drive")
+    ring = minors[size].ring
+    value = ring.zero
     for column, entry in wanted.items():
         minor = minors.get(column, ring.zero)
-        numerator += entry * (minor if (size - 1 - column) % 2 == 0 else -minor)
-    return numerator, determinant
+        value += entry * (minor if (size - 1 - column) % 2 == 0 else -minor)
+    return value
 
 
 def _row(

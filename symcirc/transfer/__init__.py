@@ -1,0 +1,1 @@
+"""The transfer function: its making, its standard form, how it is written and evaluated."""

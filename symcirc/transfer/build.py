@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import Any
 
 from sympy.polys.domains import QQ
 from sympy.polys.orderings import lex
@@ -66,7 +67,7 @@ def _canonical(above: PolyElement, below: PolyElement) -> tuple[PolyElement, Pol
     return (-above, -below) if negative else (above, below)
 
 
-def _content(above: PolyElement, below: PolyElement) -> object:
+def _content(above: PolyElement, below: PolyElement) -> Any:
     content = below.content()
     return QQ.gcd(content, above.content()) if above else content
 
