@@ -1,39 +1,71 @@
-"""From a sheet to the transfer function of everything it asks, each answer reached in two ways."""
+"""From a sheet to the transfer function of everything it asks, each answer reached in two ways or three."""
 
 from __future__ import annotations
 
-from collections.abc import Callable, Container, Mapping
-from dataclasses import dataclass
+from collections.abc import Callable, Container, Iterator, Mapping
+from dataclasses import dataclass, replace
 
 from symcirc.circuit import build_circuit, build_setup
 from symcirc.circuit.amplifier import gain_symbol, loop_gains, real_circuit
-from symcirc.circuit.model import Circuit, LoopDrive, Setup
+from symcirc.circuit.model import Circuit, LoopDrive, Setup, VoltageDrive
 from symcirc.circuit.structure import bias_remarks, explain_singular, refuse_structure
-from symcirc.complaints import Complaint, Remark, listed
+from symcirc.complaints import Complaint, InternalFault, Remark, listed
 from symcirc.elimination import solve
 from symcirc.elimination.solve import silent
-from symcirc.nodal import System, build_system
+from symcirc.nodal import build_system
 from symcirc.ratio import Coefficient, Ratio
 from symcirc.sheet.expression import Expression
-from symcirc.sheet.model import Ask, Sheet
-from symcirc.transfer.build import build_function
+from symcirc.sheet.model import Ask, Sheet, Voltage
+from symcirc.stability.exchanged import exchanged_inputs
+from symcirc.transfer.build import Built, build_function
 from symcirc.transfer.function import TransferFunction, symbols_in
 from symcirc.transfer.signs import sign_remarks
-from symcirc.witness.agree import Evidence, confirm
+from symcirc.trees.answer import determinants
+from symcirc.trees.collect import collected
+from symcirc.trees.count import count
+from symcirc.trees.diagram import Diagram
+from symcirc.trees.evaluate import response
+from symcirc.trees.expand import expanded, symbols
+from symcirc.witness.agree import Evidence, confirm, confirm_values
 
 Progress = Callable[[str], None]
+
+#: Answers with more products than this are not expanded unless it is asked for.
+MOST_PRODUCTS = 20_000
+#: Elimination is the second symbolic way where it is cheap: with no more products and nodes than these it takes
+#: some tens of milliseconds, however the circuit is connected.
+CHEAP_PRODUCTS, CHEAP_NODES = 2_000, 24
 
 
 @dataclass(frozen=True)
 class Answer:
-    """One ask's transfer function, the equations it came from and the evidence for it."""
+    """One ask's transfer function and the evidence for it.
+
+    ``ratio`` is what the two-graph engine gave, ties not yet in it. ``eliminated`` tells that elimination of the
+    nodal equations, too, came to the same function.
+    """
 
     ask: Ask
     setup: Setup
-    system: System
     ratio: Ratio
     function: TransferFunction
     evidence: Evidence
+    eliminated: bool
+
+
+@dataclass(frozen=True)
+class BigAnswer:
+    """One ask's answer as a decision diagram: expanded it would have ``products`` (over, under) in it.
+
+    ``loop_gain`` names the amplifier's gain by which minus the ratio is multiplied where a loop gain is asked.
+    """
+
+    ask: Ask
+    setup: Setup
+    diagram: Diagram
+    products: tuple[int, int]
+    evidence: Evidence
+    loop_gain: str | None
 
 
 @dataclass(frozen=True)
@@ -43,85 +75,158 @@ class Derivation:
     sheet: Sheet
     circuit: Circuit
     ties: Mapping[str, Expression]
-    answers: tuple[Answer, ...]
+    answers: tuple[Answer | BigAnswer, ...]
     remarks: tuple[Remark, ...]
 
     def answer(self, name: str) -> Answer:
-        """Return the answer of the ask of that name (it must be there)."""
-        return next(answer for answer in self.answers if answer.ask.name == name)
+        """Return the expanded answer of that name; raises KeyError where there is none."""
+        for answer in self.answers:
+            if answer.ask.name == name and isinstance(answer, Answer):
+                return answer
+        raise KeyError(name)
 
 
-def derive(sheet: Sheet, wanted: Container[str] | None = None, progress: Progress = silent) -> Derivation:
-    """Return the transfer functions of a sheet's asks (or of the wanted ones only), its amplifiers ideal.
+@dataclass(frozen=True)
+class Posed:
+    """A sheet's asks made ready: the circuit, its ties, and what each ask applies."""
 
-    Raises Complaint for a circuit that cannot be solved, InternalFault where the two ways to an answer disagree.
+    sheet: Sheet
+    circuit: Circuit
+    ties: Mapping[str, Expression]
+    setups: Mapping[str, Setup]
+
+    def wanted(self, names: Container[str] | None) -> Iterator[tuple[Ask, Setup]]:
+        """Yield the asks of these names, or all, each with what it applies."""
+        for ask in self.sheet.asks:
+            if names is None or ask.name in names:
+                yield ask, self.setups[ask.name]
+
+
+def pose(sheet: Sheet) -> Posed:
+    """Return a sheet's asks made ready, its amplifiers ideal; raises Complaint for what no circuit may have."""
+    return _pose(sheet, build_circuit(sheet), sheet.ties)
+
+
+def pose_real(sheet: Sheet) -> Posed:
+    """Return a sheet's asks made ready, the amplifiers' ``gain`` and ``gbw`` counted."""
+    circuit, gains = real_circuit(build_circuit(sheet))
+    return _pose(sheet, circuit, {**sheet.ties, **gains})
+
+
+def _pose(sheet: Sheet, circuit: Circuit, ties: Mapping[str, Expression]) -> Posed:
+    setups = {ask.name: build_setup(circuit, sheet.asks, ask) for ask in sheet.asks}
+    refuse_structure(circuit, sheet.asks, tuple(setups.values()))
+    loops = loop_gains(build_circuit(sheet), setups.values())
+    return Posed(sheet, circuit, {**ties, **loops}, setups)
+
+
+def derive(
+    posed: Posed, wanted: Container[str] | None = None, most: int = MOST_PRODUCTS, progress: Progress = silent
+) -> Derivation:
+    """Return the transfer functions of a sheet's asks, or of the wanted ones only.
+
+    An answer with more than ``most`` products is left as a decision diagram. Raises Complaint for a circuit that
+    cannot be solved, InternalFault where two ways to an answer disagree.
 
     >>> from symcirc.complaints import Source
     >>> from symcirc.sheet import read_sheet
     >>> sheet = read_sheet(Source("a.stage", "in -- R1 -- out -- C1 -- gnd\\nask H = V_out/V_in"))
-    >>> derive(sheet).answer("H").function.denominator
+    >>> derive(pose(sheet)).answer("H").function.denominator
     (1, R1*C1)
     """
-    return _derive(sheet, build_circuit(sheet), sheet.ties, wanted, progress)
-
-
-def derive_real(
-    sheet: Sheet, wanted: Container[str] | None = None, progress: Progress = silent
-) -> Derivation:
-    """Return the transfer functions as :func:`derive`, the amplifiers' ``gain`` and ``gbw`` counted."""
-    circuit, gains = real_circuit(build_circuit(sheet))
-    return _derive(sheet, circuit, {**sheet.ties, **gains}, wanted, progress)
-
-
-def _derive(
-    sheet: Sheet,
-    circuit: Circuit,
-    ties: Mapping[str, Expression],
-    wanted: Container[str] | None,
-    progress: Progress,
-) -> Derivation:
-    setups = tuple(build_setup(circuit, sheet.asks, ask) for ask in sheet.asks)
-    refuse_structure(circuit, sheet.asks, setups)
-    ties = {**ties, **loop_gains(build_circuit(sheet), setups)}
-    answers: list[Answer] = []
-    remarks = [*sheet.remarks, *bias_remarks(circuit, setups)]
-    for ask, setup in zip(sheet.asks, setups, strict=True):
-        if wanted is not None and ask.name not in wanted:
-            continue
+    answers: list[Answer | BigAnswer] = []
+    setups = tuple(posed.setups.values())
+    remarks = [*posed.sheet.remarks, *bias_remarks(posed.circuit, setups)]
+    for ask, setup in posed.wanted(wanted):
         progress(f"deriving {ask.name}")
-        answer, found = _answer(circuit, ties, ask, setup, progress)
+        diagram = collected(solved_diagram(posed, setup))
+        if sum(count(diagram)) > most:
+            answers.append(_big_answer(posed, ask, setup, diagram))
+            continue
+        answer, found = _answer(posed, ask, setup, diagram, progress)
         answers.append(answer)
-        remarks += [*found, *sign_remarks(answer.function, sheet.symbols, ask)]
-    remarks += _idle_parts(circuit, answers)
-    return Derivation(sheet, circuit, ties, tuple(answers), tuple(remarks))
+        remarks += [*found, *sign_remarks(answer.function, posed.sheet.symbols, ask)]
+    remarks += _idle_parts(posed, answers)
+    remarks += exchanged_inputs(posed.sheet, build_circuit(posed.sheet), setups)
+    return Derivation(posed.sheet, posed.circuit, posed.ties, tuple(answers), tuple(remarks))
+
+
+def solved_diagram(posed: Posed, setup: Setup) -> Diagram:
+    """Return numerator and denominator of an ask as a decision diagram, products not yet collected.
+
+    Raises Complaint where the equations have no unique solution, or what stands under the line is always zero.
+    """
+    diagram = determinants(posed.circuit, setup)
+    if collected(diagram).roots[1]:
+        return diagram
+    drive = setup.drive
+    if isinstance(drive, VoltageDrive):
+        own = Voltage(drive.plus, drive.minus, setup.place)
+        if collected(determinants(posed.circuit, replace(setup, under=own))).roots[1]:
+            raise Complaint(
+                setup.under.place,
+                f"what stands under the line of `{setup.ask}` is zero, whatever the drive is",
+                "put a voltage or a current under the line that the drive moves",
+            )
+    raise explain_singular(posed.circuit, setup)
+
+
+def _big_answer(posed: Posed, ask: Ask, setup: Setup, diagram: Diagram) -> BigAnswer:
+    def value(known: Mapping[str, complex], s: complex) -> complex:
+        return response(diagram, known, s)  # type: ignore[arg-type]  # a tied value may be complex
+
+    evidence = confirm_values(posed.circuit, setup, posed.ties, value)
+    loop = gain_symbol(setup.drive.amplifier) if isinstance(setup.drive, LoopDrive) else None
+    return BigAnswer(ask, setup, diagram, count(diagram), evidence, loop)
 
 
 def _answer(
-    circuit: Circuit, ties: Mapping[str, Expression], ask: Ask, setup: Setup, progress: Progress
+    posed: Posed, ask: Ask, setup: Setup, diagram: Diagram, progress: Progress
 ) -> tuple[Answer, list[Remark]]:
-    system = build_system(circuit, setup)
-    ratio = solve(system, progress)
-    if ratio is None:
-        raise explain_singular(circuit, setup)
-    if not ratio.denominator:
-        raise Complaint(
-            setup.under.place,
-            f"what stands under the line of `{ask.name}` is zero, whatever the drive is",
-            "put a voltage or a current under the line that the drive moves",
-        )
-    if isinstance(setup.drive, LoopDrive):
-        ratio = _loop_ratio(ratio, gain_symbol(setup.drive.amplifier))
-    built = build_function(ratio, ties)
+    over, under = (tuple(expanded(diagram, root)) for root in diagram.roots)
+    ratio = _as_asked(Ratio(symbols(diagram), over, under), setup)
+    built = build_function(ratio, posed.ties)
     if built is None:
         raise Complaint(
             ask.place,
             f"with the sheet's fixes the equations for `{ask.name}` have no solution, or many",
-            f"look at what is tied ({listed(list(ties)[:6])}): it makes the circuit singular",
+            f"look at what is tied ({listed(list(posed.ties)[:6])}): it makes the circuit singular",
         )
-    evidence = confirm(circuit, setup, ties, built.function)
-    return Answer(ask, setup, system, ratio, built.function, evidence), _hidden_mode(
-        ask, len(built.hidden) - 1
-    )
+    evidence = confirm(posed.circuit, setup, posed.ties, built.function)
+    cheap = is_cheap(posed.circuit, diagram)
+    hidden = _eliminate(posed, setup, built, progress) if cheap else built
+    answer = Answer(ask, setup, ratio, built.function, evidence, cheap)
+    return answer, _hidden_mode(ask, len(hidden.hidden) - 1)
+
+
+def is_cheap(circuit: Circuit, diagram: Diagram) -> bool:
+    """Tell whether elimination is made too, as a second symbolic way."""
+    return sum(count(diagram)) <= CHEAP_PRODUCTS and len(circuit.graph) <= CHEAP_NODES
+
+
+def _eliminate(posed: Posed, setup: Setup, built: Built, progress: Progress) -> Built:
+    """Derive once more by elimination of the nodal equations; raises InternalFault where it comes out otherwise."""
+    ratio = solve(build_system(posed.circuit, setup), progress)
+    other = None if ratio is None else build_function(_as_asked(ratio, setup), posed.ties)
+    if other is None or _written(other.function) != _written(built.function):
+        raise InternalFault(f"elimination and the two-graph engine give different functions for {setup.ask}")
+    return other
+
+
+def _written(function: TransferFunction) -> tuple[object, ...]:
+    """Return a function in a form that does not depend on which symbols its ring holds besides."""
+    gens = function.ring.symbols
+
+    def terms(coefficients: tuple[object, ...]) -> list[object]:
+        return [
+            {
+                tuple((str(gens[k]), e) for k, e in enumerate(monomial) if e): number
+                for monomial, number in coefficient.terms()  # type: ignore[attr-defined]
+            }
+            for coefficient in coefficients
+        ]
+
+    return terms(function.numerator), terms(function.denominator)
 
 
 def _hidden_mode(ask: Ask, degree: int) -> list[Remark]:
@@ -131,29 +236,34 @@ def _hidden_mode(ask: Ask, degree: int) -> list[Remark]:
     return [Remark(ask.place, f"{mode}: the circuit has a natural mode that this ratio does not show")]
 
 
-def _loop_ratio(ratio: Ratio, gain: str) -> Ratio:
-    """Return minus the ratio times the amplifier's gain: T = -A (V+ - V-)/V_drives."""
+def _as_asked(ratio: Ratio, setup: Setup) -> Ratio:
+    """Return the ratio, or for a loop gain T = -A (V+ - V-)/V_drives minus the ratio times the gain A."""
+    if not isinstance(setup.drive, LoopDrive):
+        return ratio
 
     def extended(coefficient: Coefficient, exponent: int, sign: int) -> Coefficient:
-        return {(*exponents, exponent): sign * count for exponents, count in coefficient.items()}
+        return {(*exponents, exponent): sign * number for exponents, number in coefficient.items()}
 
     return Ratio(
-        (*ratio.symbols, gain),
+        (*ratio.symbols, gain_symbol(setup.drive.amplifier)),
         tuple(extended(c, 1, -1) for c in ratio.numerator),
         tuple(extended(c, 0, 1) for c in ratio.denominator),
     )
 
 
-def _idle_parts(circuit: Circuit, answers: list[Answer]) -> list[Remark]:
+def _idle_parts(posed: Posed, answers: list[Answer | BigAnswer]) -> list[Remark]:
     """Return a remark for every part that moves nothing that is asked, ties left aside."""
     moved: set[str] = set()
     for answer in answers:
+        if isinstance(answer, BigAnswer):
+            moved |= set(symbols(answer.diagram))
+            continue
         untied = build_function(answer.ratio, {})
         if untied is not None:
             moved |= symbols_in(untied.function)
     asked = ", ".join(answer.ask.name for answer in answers)
     return [
         Remark(part.place, f"part `{part.label}` has no influence on what is asked ({asked})")
-        for part in circuit.parts
+        for part in posed.circuit.parts
         if part.name not in moved
     ]

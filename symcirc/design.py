@@ -9,7 +9,7 @@ from typing import Any
 import sympy
 
 from symcirc.complaints import Complaint, Remark, nearest
-from symcirc.derivation import Answer, Derivation, Progress, derive
+from symcirc.derivation import MOST_PRODUCTS, Answer, BigAnswer, Derivation, Progress, derive, pose
 from symcirc.elimination.solve import silent
 from symcirc.goal import Goal, build_goal, symbol, target_symbols
 from symcirc.match.problem import Branch, Problem, Refusal
@@ -58,8 +58,8 @@ def design(sheet: Sheet, ask: str | None = None, progress: Progress = silent) ->
     be used; and where too many parts are free. Raises InternalFault where a solution does not give the target.
     """
     target = pick_target(sheet, ask)
-    derivation = derive(sheet, {target.ask}, progress)
-    answer = derivation.answer(target.ask)
+    derivation = derive(pose(sheet), {target.ask}, MOST_PRODUCTS, progress)
+    answer = _expanded(derivation, target)
     goal = build_goal(sheet, target)
     problem = build_problem(sheet, answer, goal)
 
@@ -75,6 +75,17 @@ def design(sheet: Sheet, ask: str | None = None, progress: Progress = silent) ->
     progress("proving the solutions")
     solutions = tuple(_solution(derivation, answer, goal, problem, branch) for branch in outcome.branches)
     return Design(derivation, answer, goal, problem, solutions, None, derivation.remarks)
+
+
+def _expanded(derivation: Derivation, target: Target) -> Answer:
+    (answer,) = derivation.answers
+    if isinstance(answer, BigAnswer):
+        raise Complaint(
+            target.place,
+            f"`{target.ask}` is too big to be matched: it has {sum(answer.products):,} products",
+            "match its sections one by one",
+        )
+    return answer
 
 
 def pick_target(sheet: Sheet, ask: str | None) -> Target:

@@ -140,6 +140,22 @@ def test_a_fault_of_the_program_is_said_so_without_a_traceback(capsys, sheet, mo
 
 
 def test_a_derivation_that_the_numeric_solve_contradicts_prints_no_result(capsys, sheet, monkeypatch):
+    expanded = symcirc.derivation.expanded
+
+    def corrupted(*arguments):
+        polynomial = expanded(*arguments)
+        return [
+            {exponents: 2 * number for exponents, number in c.items()} for c in polynomial[:1]
+        ] + polynomial[1:]
+
+    monkeypatch.setattr(symcirc.derivation, "expanded", corrupted)
+    called = call(capsys, "derive", sheet(LOW_PASS), "--json")
+    assert called.status == 70
+    assert "the numeric solve of the circuit gives" in called.err
+    assert called.out == ""
+
+
+def test_a_derivation_that_elimination_contradicts_prints_no_result(capsys, sheet, monkeypatch):
     solve = symcirc.derivation.solve
 
     def corrupted(*arguments):
@@ -149,7 +165,7 @@ def test_a_derivation_that_the_numeric_solve_contradicts_prints_no_result(capsys
     monkeypatch.setattr(symcirc.derivation, "solve", corrupted)
     called = call(capsys, "derive", sheet(LOW_PASS), "--json")
     assert called.status == 70
-    assert "the numeric solve of the circuit gives" in called.err
+    assert "elimination and the two-graph engine give different functions" in called.err
     assert called.out == ""
 
 

@@ -7,11 +7,14 @@ import sys
 from argparse import Namespace
 from collections.abc import Callable, Iterable
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from symcirc.command.progress import ProgressLine
 from symcirc.complaints import Complaint, Place, Remark, Source, nearest
 from symcirc.sheet import Sheet, decode, read_sheet
+
+if TYPE_CHECKING:
+    from symcirc.derivation import Posed
 
 
 def read_file(path: str) -> Source:
@@ -30,20 +33,50 @@ def read_file(path: str) -> Source:
     return decode(data, path)
 
 
+#: Up to so many products an answer is written out for people, unless they say otherwise.
+MOST_FOR_PEOPLE = 400
+
+
 def derive(words: Namespace, progress: ProgressLine) -> int:
     """Print the transfer functions of a sheet."""
-    from symcirc.derivation import derive as derive_ideal
-    from symcirc.derivation import derive_real
+    from symcirc.derivation import pose, pose_real
 
     sheet = read_sheet(read_file(words.sheet))
     wanted = _wanted(sheet, words.ask)
-    derivation = (derive_real if words.real else derive_ideal)(sheet, wanted, progress)
+    posed = (pose_real if words.real else pose)(sheet)
+    if words.terms or words.largest:
+        _unexpanded(words, posed, wanted, progress)
+    else:
+        _expanded(words, posed, wanted, progress)
+    return 0
+
+
+def _unexpanded(words: Namespace, posed: Posed, wanted: set[str] | None, progress: ProgressLine) -> None:
+    from symcirc.report import products
+
+    if words.terms and words.json:
+        _print_json(products.terms_json(posed, wanted), progress)
+    elif words.json:
+        _print_json(products.largest_json(posed, wanted, words.largest), progress)
+    elif words.terms:
+        _print_text(products.terms_text(posed, wanted), posed.sheet.remarks, progress)
+    else:
+        _print_text(products.largest_text(posed, wanted, words.largest), posed.sheet.remarks, progress)
+
+
+def _expanded(words: Namespace, posed: Posed, wanted: set[str] | None, progress: ProgressLine) -> None:
+    from symcirc.derivation import MOST_PRODUCTS
+    from symcirc.derivation import derive as derive_posed
+
+    for_people = not (words.json or words.values)
+    most = words.most or (MOST_FOR_PEOPLE if for_people else MOST_PRODUCTS)
+    derivation = derive_posed(posed, wanted, most, progress)
     if words.json:
         from symcirc.report.derive_json import derive_json, equations_json, values_json
 
         write = values_json if words.values else equations_json if words.equations else derive_json
         _print_json(write(derivation), progress)
-        return 0
+        return
     from symcirc.report import derive_text as written
 
     if words.equations:
@@ -53,7 +86,6 @@ def derive(words: Namespace, progress: ProgressLine) -> int:
     else:
         lines = written.derive_latex(derivation) if words.latex else written.derive_text(derivation)
     _print_text(lines, derivation.remarks, progress)
-    return 0
 
 
 def match(words: Namespace, progress: ProgressLine) -> int:

@@ -58,12 +58,23 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     what = derive.add_mutually_exclusive_group()
     what.add_argument("--equations", action="store_true", help="print the nodal equations that are solved")
     what.add_argument("--values", action="store_true", help="print coefficients for the fixed numbers")
+    what.add_argument("--terms", action="store_true", help="count the products, without expanding any")
+    what.add_argument(
+        "--largest", type=_count, metavar="K", help="the K largest products of every coefficient"
+    )
+    derive.add_argument("--most", type=_count, metavar="N", help="expand an answer of up to N products")
     derive.add_argument("--real", action="store_true", help="count the amplifiers' gain and gbw")
     match = _verb(verbs, "match", "the design equations and part values for the target", MATCH)
     form = match.add_mutually_exclusive_group()
     form.add_argument("--json", action="store_true", help="print one JSON object")
     form.add_argument("--latex", action="store_true", help="print LaTeX")
     return parser.parse_args(arguments)
+
+
+def _count(text: str) -> int:
+    if not text.isascii() or not text.isdigit() or not 0 < int(text[:12]) < 10**10:
+        raise argparse.ArgumentTypeError(f"{text!r} is not a whole number from 1")
+    return int(text)
 
 
 def _verb(verbs: argparse._SubParsersAction[Words], name: str, summary: str, description: str) -> Words:

@@ -1,0 +1,1 @@
+"""From a stage and a target to design equations: see :func:`symcirc.match.solve.solve`."""

@@ -15,8 +15,7 @@ import sympy
 from symcirc.match.decimals import decimal, exact, reals
 from symcirc.match.names import is_part, natural
 
-#: Denominators up to this are written as a fraction, longer ones as a decimal number where that is exact.
-_SHORT = 1000
+#: Numerators and denominators beyond this are not written.
 _LONGEST_FRACTION = 10**15
 
 
@@ -88,11 +87,14 @@ def _number(number: sympy.Expr) -> tuple[list[Factor], list[Factor]]:
 
 
 def _fraction(value: Fraction) -> tuple[sympy.Expr | str, int]:
-    """Return what is written above and below for a fraction."""
+    """Return what is written above and below for a fraction: the shorter way where the decimals are exact."""
     upper, lower = value.numerator, value.denominator
-    if lower > _SHORT:
+    if lower > 1:
         text = decimal_text(sympy.Rational(upper, lower))
-        if Fraction(text) == value or max(upper, lower) > _LONGEST_FRACTION:
+        is_exact = Fraction(text) == value
+        if (is_exact and len(text) < len(f"{upper}/{lower}")) or (
+            not is_exact and max(upper, lower) > _LONGEST_FRACTION
+        ):
             return text, 1
     return sympy.Integer(upper), lower
 
@@ -103,7 +105,7 @@ def decimal_text(number: sympy.Expr) -> str:
     >>> decimal_text(sympy.Rational(1, 3)), decimal_text(sympy.Rational(1, 2048))
     ('0.33333333333333333', '0.00048828125')
     """
-    digits = reals.nstr(decimal(number), 17, min_fixed=-5, max_fixed=17)
+    digits: str = reals.nstr(decimal(number), 17, min_fixed=-5, max_fixed=17)
     return digits.removesuffix(".0").replace(".0e", "e")
 
 

@@ -13,7 +13,7 @@ from symcirc.match.forms import Form
 from symcirc.match.quadratics import Quadratic
 from symcirc.match.quantities import Quantities, by_powers, common_monomial, divided_by_monomial, holds
 from symcirc.match.system import Quotient
-from symcirc.match.work import Work
+from symcirc.match.work import StepTooLarge, Work
 
 #: Claims with more terms are stated in parts found before instead of in chosen quantities only.
 MOST_TERMS = 250
@@ -93,19 +93,27 @@ class _Collected:
         held = [k for k in self.roots if any(holds(f, k) for f in reduced.factors)]
         found: list[Claim] | None = None
         if len(held) == 1:
-            root = self.roots[held[0]]
-            found = root.positivity(reduced.factors, self._known(), self.quantities, self.work)
+            found = self._by_root(self.roots[held[0]], reduced.factors)
         if found is None:
             self.claims.append(Claim(tuple(factors)) if held else reduced)
         else:
             self.claims += [self._in_chosen(claim) for claim in found]
 
+    def _by_root(self, root: Quadratic, factors: Sequence[PolyElement]) -> list[Claim] | None:
+        try:
+            return root.positivity(factors, self._known(), self.quantities, self.work)
+        except StepTooLarge:
+            return None
+
     def _in_chosen(self, claim: Claim) -> Claim:
-        """Return an equal claim with the parts from linear steps put in; the claim itself where that is long."""
+        """Return an equal claim with parts from linear steps put in; the claim itself where that is long."""
         factors = list(claim.factors)
         for form in reversed(self.forms):
             if form.degree == 1 and form.power == 1:
-                factors = [g for f in factors for g in self._put_in(f, form)]
+                try:
+                    factors = [g for f in factors for g in self._put_in(f, form)]
+                except StepTooLarge:
+                    return claim
         return Claim(tuple(factors), claim.strict) if sum(map(len, factors)) <= MOST_TERMS else claim
 
     def _put_in(self, polynomial: PolyElement, form: Form) -> list[PolyElement]:

@@ -11,12 +11,20 @@ from sympy.polys.rings import PolyElement
 from symcirc.match.chains import Chain
 from symcirc.match.decimals import reals
 from symcirc.match.forms import Form, form_of
+from symcirc.match.problem import Refusal
 from symcirc.match.quantities import Quantities, value_at
 from symcirc.match.roots import positive_roots, real_roots
 
 
 class Degenerate(Exception):
-    """A formula divides by zero for the numbers given; they have to be put in before solving."""
+    """The solution in symbols fails for the numbers given: they have to be put in before solving.
+
+    ``refusal`` is what is to be said where that does not help, None where it is what then is found.
+    """
+
+    def __init__(self, refusal: Refusal | None = None) -> None:
+        super().__init__()
+        self.refusal = refusal
 
 
 @dataclass(frozen=True)

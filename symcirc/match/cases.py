@@ -1,7 +1,8 @@
 """Solutions that an elimination passes over: those where the coefficient of an eliminated unknown is zero.
 
 From ``a x + b = 0`` the unknown x was taken as -b/a. Where a is zero, b must be zero too, and x follows from the
-other equations. That is one equation more than unknowns, so that such cases are rare.
+other equations. That is one equation more than unknowns, so that such cases are rare. A common factor of a and b
+that was dropped may be zero as well.
 """
 
 from __future__ import annotations
@@ -11,7 +12,7 @@ import random
 from sympy.polys.rings import PolyElement
 
 from symcirc.match.quantities import Quantities, by_powers, holds_any
-from symcirc.match.triangular import State, triangular
+from symcirc.match.triangular import Pivot, State, triangular
 from symcirc.match.work import Work
 
 
@@ -23,20 +24,25 @@ def missing_cases(state: State, quantities: Quantities, work: Work) -> list[Stat
     """
     found = []
     for k, pivot in enumerate(state.pivots):
-        rest, lead = by_powers(pivot.equation, pivot.unknown)[:2]
         unknowns = [pivot.unknown, *(p.unknown for p in state.pivots[k + 1 :])]
         unknowns += [step.unknown for step in state.roots]
-        if pivot.equation.degree(pivot.unknown) > 1 or quantities.sign(lead):
-            continue
-        if not holds_any(lead, unknowns):
-            continue
-        equations = [lead, rest, *pivot.others]
-        if triangular([_sampled(e, quantities) for e in equations], unknowns, quantities, work) is None:
-            continue
-        case = triangular([quantities.cleaned(e) for e in equations], unknowns, quantities, work)
-        if case is not None and not case.open:
-            found.append(State((), case.open, case.roots, (*state.pivots[:k], *case.pivots)))
+        for zeros in _zeros(pivot, unknowns, quantities):
+            equations = [*zeros, *pivot.others]
+            if triangular([_sampled(e, quantities) for e in equations], unknowns, quantities, work) is None:
+                continue
+            case = triangular([quantities.cleaned(e) for e in equations], unknowns, quantities, work)
+            if case is not None and not case.open:
+                found.append(State((), case.open, case.roots, (*state.pivots[:k], *case.pivots)))
     return found
+
+
+def _zeros(pivot: Pivot, unknowns: list[int], quantities: Quantities) -> list[list[PolyElement]]:
+    """Return the polynomials that would have to be zero together in each case that a pivot passes over."""
+    if pivot.equation.degree(pivot.unknown) > 1:
+        return []
+    rest, lead = by_powers(pivot.equation, pivot.unknown)
+    cases = [[pivot.dropped], [lead, rest]]
+    return [c for c in cases if not quantities.sign(c[0]) and holds_any(c[0], unknowns)]
 
 
 def _sampled(equation: PolyElement, quantities: Quantities) -> PolyElement:

@@ -8,7 +8,7 @@ holds for all, everywhere.
 from __future__ import annotations
 
 import random
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 from itertools import product
 from typing import Any
@@ -16,10 +16,12 @@ from typing import Any
 from sympy.polys.rings import PolyElement
 
 from symcirc.match.decimals import reals
+from symcirc.match.elimination import put_in
 from symcirc.match.names import natural
 from symcirc.match.quantities import Quantities, by_powers, holds, holds_any, is_met, value_at
 from symcirc.match.roots import complex_roots
 from symcirc.match.triangular import State, Step
+from symcirc.match.work import StepTooLarge, Work
 
 #: Equations with more terms are not factored, as that could take long.
 MOST_FACTORED_TERMS = 300
@@ -39,7 +41,11 @@ class Chain:
 
 
 def chains(
-    state: State, equations: Sequence[PolyElement], pool: Sequence[PolyElement], quantities: Quantities
+    state: State,
+    equations: Sequence[PolyElement],
+    pool: Sequence[PolyElement],
+    quantities: Quantities,
+    work: Work,
 ) -> list[Chain]:
     """Return the chains of a triangular form that solve the original equations.
 
@@ -48,6 +54,7 @@ def chains(
         equations: those it came from.
         pool: further relations; those that follow serve as formulas where they are shorter.
         quantities: the ring.
+        work: counts the products of terms.
     """
     point = random_point(quantities)
     found = []
@@ -57,7 +64,7 @@ def chains(
         for sample in solutions_at(steps, point):
             if all(is_met(equation, sample) for equation in equations):
                 usable = [r for r in pool if r and is_met(r, sample)]
-                ordered = _shortest(steps, [*equations, *usable], quantities, sample)
+                ordered = _shortest(steps, [*equations, *usable], quantities, sample, work)
                 found.append(Chain(ordered, tuple(sample)))
                 break
     return found
@@ -96,7 +103,11 @@ def solutions_at(steps: Sequence[Step], point: Sequence[Any]) -> Iterator[list[A
 
 
 def _shortest(
-    steps: Sequence[Step], relations: Sequence[PolyElement], quantities: Quantities, values: Sequence[Any]
+    steps: Sequence[Step],
+    relations: Sequence[PolyElement],
+    quantities: Quantities,
+    values: Sequence[Any],
+    work: Work,
 ) -> tuple[Step, ...]:
     """Return the steps with each linear one replaced by the shortest equation that gives an unknown by then.
 
@@ -119,9 +130,26 @@ def _shortest(
             for s in roots
             if s.unknown in missing and not holds_any(s.equation, missing - {s.unknown})
         ]
-        ordered.append(min(candidates, key=lambda candidate: candidate[:2])[2])
-        missing.discard(ordered[-1].unknown)
+        step = min(candidates, key=lambda candidate: candidate[:2])[2]
+        ordered.append(step)
+        missing.discard(step.unknown)
+        if len(step.equation) == 2 and step.equation.degree(step.unknown) == 1:
+            pool |= dict.fromkeys(_with_put_in(step, pool, quantities, work))
     return tuple(ordered)
+
+
+def _with_put_in(
+    step: Step, pool: Iterable[PolyElement], quantities: Quantities, work: Work
+) -> Iterator[PolyElement]:
+    """Yield the equations that a part's formula of one term, put in, makes no longer."""
+    for equation in pool:
+        if holds(equation, step.unknown) and equation != step.equation:
+            try:
+                shorter = put_in(equation, step.unknown, step.equation, quantities, work)
+            except StepTooLarge:
+                continue
+            if shorter and len(shorter) <= len(equation):
+                yield shorter
 
 
 def _alone(equation: PolyElement, missing: set[int]) -> list[int]:

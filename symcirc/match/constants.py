@@ -57,7 +57,7 @@ class Constants:
         return expression.func(self.rational(expression.func(*numbers)), *others)
 
     def _number(self, expression: sympy.Expr) -> sympy.Expr:
-        if not expression.is_real:
+        if not expression.evalf(20).is_real:
             raise Refused(
                 Refusal(
                     "target", f"the target holds {expression}, which is no real number", "use real numbers"

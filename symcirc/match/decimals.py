@@ -86,5 +86,5 @@ def as_fraction(value: Any) -> Fraction:
     Fraction(-3, 4)
     """
     sign, mantissa, exponent, _ = value._mpf_
-    size = Fraction(int(mantissa)) * Fraction(2) ** exponent
+    size: Fraction = Fraction(int(mantissa)) * Fraction(2) ** exponent
     return -size if sign else size

@@ -41,7 +41,7 @@ def put_in(
 def without_factor(equation: PolyElement, factor: PolyElement, quantities: Quantities) -> PolyElement:
     """Return an equation without a factor that is known not to be zero."""
     factor = quantities.cleaned(factor)
-    if factor.is_ground:
+    if factor.is_ground or not equation:
         return equation
     while len(equation) >= len(factor):
         quotient, rest = equation.div(factor)

@@ -120,19 +120,19 @@ def _square_root(radicand: Product, factor: Any, quantities: Quantities) -> tupl
     radicand = without_sign(radicand)
     size = factor**2 * radicand.number
     fraction = fraction_near(abs(size))
+    outside = reals.mpf(1)
     if fraction is not None:
-        whole_part, rest = _square_part(abs(fraction))
+        whole_part, rest = _square_part(fraction)
         outside = reals.mpf(whole_part.numerator) / whole_part.denominator
-        inside = Product(reals.sign(size) * rest, radicand.monomial, radicand.sums)
-        return sympy.sqrt(expression(inside, quantities)), reals.sign(factor) * outside
+        size = reals.sign(size) * rest
     sums = dict(radicand.sums)
-    if sums:  # a long number goes into the bracket, where it may stand at one term only
+    if sums and abs(size) != 1:  # the number goes into the bracket, where it may stand at one term only
         key = next(iter(sums))
-        terms = Sum(tuple((monomial, value * size) for monomial, value in key.terms))
-        sums = {terms: sums.pop(key), **sums}
-        size = reals.mpf(1)
+        spread = Sum(tuple((monomial, value * size * outside**2) for monomial, value in key.terms))
+        sums = {spread: sums.pop(key), **sums}
+        size, outside = reals.mpf(1), reals.mpf(1)
     inside = Product(size, radicand.monomial, sums)
-    return sympy.sqrt(expression(inside, quantities)), reals.sign(factor)
+    return sympy.sqrt(expression(inside, quantities)), reals.sign(factor) * outside
 
 
 def _square_part(fraction: Fraction) -> tuple[Fraction, int]:

@@ -10,7 +10,7 @@ import sympy
 from symcirc.match.claims import Claim
 from symcirc.match.decimals import reals
 from symcirc.match.formula import equation_text
-from symcirc.match.names import natural
+from symcirc.match.names import is_part, natural
 from symcirc.match.problem import Condition, Relation
 from symcirc.match.products import Product, expression, factored, of_terms, one, root_expression
 from symcirc.match.quantities import Monomial, Quantities, holds_any
@@ -69,6 +69,7 @@ def _isolated(
             not bounded,
             degree,
             len(high),
+            not is_part(quantities.name(position)),
             bounded and relation != "=" and stated not in (">", ">="),
             0 if bounded else len(equation_text(right)),
             natural(quantities.name(position)),

@@ -142,14 +142,35 @@ def powers(monomial: Sequence[int], quantities: Quantities) -> sympy.Expr:
 
 
 def sum_expression(terms: Sum, quantities: Quantities) -> sympy.Expr:
-    """Return a sum as an expression."""
-    return sympy.Add(*(exact(value) * powers(monomial, quantities) for monomial, value in terms.terms))
+    """Return a sum as an expression; what its positive or its negative terms have in common stands before a bracket.
+
+    >>> from symcirc.match.quantities import plain_quantities
+    >>> quantities = plain_quantities("", "C1 C2 g")
+    >>> C1, C2, g = quantities.ring.gens
+    >>> expression(whole(C1 - 4 * C2 - 4 * C2 * g, quantities), quantities)
+    C1 - 4*C2*(g + 1)
+    """
+    positive = {monomial: value for monomial, value in terms.terms if value > 0}
+    negative = {monomial: -value for monomial, value in terms.terms if value < 0}
+    parts = [(1, positive), (-1, negative)]
+    return sympy.Add(*(sign * _common_first(part, quantities) for sign, part in parts if part))
+
+
+def _common_first(terms: Mapping[Monomial, Any], quantities: Quantities) -> sympy.Expr:
+    shared = of_terms(terms)
+    if any(shared.monomial) and len(terms) > 1:
+        ((key, _),) = shared.sums.items()
+        inner = sympy.Add(*(exact(v) * powers(m, quantities) for m, v in key.terms))
+        return sympy.Mul(exact(shared.number), powers(shared.monomial, quantities), inner)
+    return sympy.Add(*(exact(value) * powers(monomial, quantities) for monomial, value in terms.items()))
 
 
 def root_expression(product: Product, degree: int, quantities: Quantities) -> sympy.Expr:
-    """Return the real root of a product, whole powers of symbols taken out of it."""
-    number = reals.sign(product.number) * reals.root(abs(product.number), degree)
+    """Return the real root of a product that is positive, whole powers of symbols taken out of it."""
+    product = without_sign(product)
+    sign = reals.sign(product.number)
     outside = [e // degree if e % degree == 0 else 0 for e in product.monomial]
     inside = tuple(e - degree * o for e, o in zip(product.monomial, outside, strict=True))
-    below_root = expression(Product(reals.mpf(1), inside, product.sums), quantities)
-    return exact(number) * powers(outside, quantities) * below_root ** sympy.Rational(1, degree)
+    number = exact(reals.root(abs(product.number), degree))
+    below_root = expression(Product(sign, inside, product.sums), quantities)
+    return number * powers(outside, quantities) * below_root ** sympy.Rational(1, degree)

@@ -41,7 +41,7 @@ class Quadratic:
         c, b, a = self.form.coefficients
         if not b:
             return [Claim((-c, a))]
-        return self._compared(quantities.ring.zero, quantities.ring.one, [], known, quantities)
+        return self._compared(quantities.ring.zero, quantities.ring.one, self.side, [], known, quantities)
 
     def positivity(
         self, factors: Sequence[PolyElement], known: Sequence[Claim], quantities: Quantities, work: Work
@@ -64,32 +64,35 @@ class Quadratic:
             return [Claim(tuple(outer))]
         polynomial = deflated(inner[0], self.form)
         _, b, a = self.form.coefficients
-        if len(inner) > 1 or polynomial is None or (not b and quantities.sign(a) != 1):
+        of_a = _sign(a, known, quantities)
+        if len(inner) > 1 or polynomial is None or (not b and of_a is None):
             return None
-        unknown, degree = self.form.unknown, polynomial.degree(self.form.unknown)
         equation = deflated(self.form.step.equation, self.form)
+        assert equation is not None, "the equation holds powers of the form's power only"
+        unknown, degree = self.form.unknown, polynomial.degree(self.form.unknown)
         rest = pseudo_remainder(polynomial, equation, unknown, work)
-        v, u = (*by_powers(rest, unknown), quantities.ring.zero)[:2]
-        outer += [a] * max(degree - 1, 0)  # the remainder came times that power of a
-        return self._compared(v, u, outer, known, quantities)
+        v, u = [*by_powers(rest, unknown), quantities.ring.zero][:2]
+        outer += [by_powers(equation, unknown)[2]] * max(degree - 1, 0)  # the remainder came times its powers
+        side = self.side if b else self.side * (of_a or 1)  # r in (-b ± r)/2a is |2a| times the root of -c/a
+        return self._compared(v, u, side, outer, known, quantities)
 
     def _compared(
         self,
         v: PolyElement,
         u: PolyElement,
+        side: int,
         outer: list[PolyElement],
         known: Sequence[Claim],
         quantities: Quantities,
     ) -> list[Claim] | None:
-        """Return claims for ``outer * (u x + v) > 0``."""
+        """Return claims for ``outer * (u x + v) > 0``, the sign of r in x being ``side``."""
 
         def sign(polynomial: PolyElement) -> int | None:
-            found = quantities.sign(polynomial)
-            return implied_sign(polynomial, known, quantities) if found is None else found
+            return _sign(polynomial, known, quantities)
 
         c, b, a = self.form.coefficients
-        p, u, norm = 2 * a * v - u * b, u * self.side, a * v**2 - b * u * v + c * u**2
-        outer = [*outer, a]
+        p, norm = 2 * a * v - u * b, a * v**2 - b * u * v + c * u**2
+        u, outer = u * side, [*outer, a]
         of_p, of_u, of_a, of_norm = sign(p), sign(u), sign(a), sign(norm)
         if of_p is not None and of_u is not None:
             if of_p * of_u >= 0:
@@ -100,3 +103,8 @@ class Quadratic:
         if of_u is not None and of_u < 0 and all(sign(factor) == 1 for factor in outer):
             return [Claim((p,)), Claim((a, norm))]
         return None
+
+
+def _sign(polynomial: PolyElement, known: Sequence[Claim], quantities: Quantities) -> int | None:
+    found = quantities.sign(polynomial)
+    return implied_sign(polynomial, known, quantities) if found is None else found

@@ -15,6 +15,7 @@ from symcirc.match.decimals import reals
 from symcirc.match.engineering import engineering
 from symcirc.match.formula import condition_text, equation_text
 from symcirc.match.inequalities import condition
+from symcirc.match.names import natural
 from symcirc.match.problem import Condition, Problem, Refusal
 from symcirc.match.quantities import Quantities, holds_any
 from symcirc.match.screening import name_of, partner_of
@@ -63,11 +64,14 @@ def too_few(coefficients: Iterable[Coefficient], system: System, found: Count, p
 
 
 def contradiction(problem: Problem) -> Refusal:
-    """Return the refusal of a problem whose equations contradict each other."""
+    """Return the refusal of a problem without a positive solution, whatever is chosen."""
+    symbols = {str(s) for s in problem.function.ring.symbols} - {*problem.unknowns, "pi"}
+    chosen = listed(sorted(symbols, key=natural), last="or")
+    whatever = f", whatever the values of {chosen}" if chosen else ""
     return Refusal(
-        "few",
-        f"no positive values of {listed(problem.unknowns)} give all coefficients of the target together",
-        "leave other parts to be solved for, or ask for another target",
+        "negative",
+        f"no positive {listed(problem.unknowns)} give this target{whatever}",
+        "ask for another target, or leave other parts to be solved for",
     )
 
 

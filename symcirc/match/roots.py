@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from fractions import Fraction
+from itertools import pairwise
 from typing import Any
 
 from symcirc.match.decimals import as_fraction, reals
@@ -104,7 +105,7 @@ def _value(polynomial: Polynomial, x: Fraction) -> Fraction:
 def _changes(sequence: list[Polynomial], x: Fraction) -> int:
     """Return the number of changes of sign along the sequence at ``x``."""
     signs = [v > 0 for v in (_value(p, x) for p in sequence) if v]
-    return sum(a != b for a, b in zip(signs, signs[1:], strict=False))
+    return sum(a != b for a, b in pairwise(signs))
 
 
 def _isolated(sequence: list[Polynomial]) -> list[tuple[Fraction, Fraction]]:

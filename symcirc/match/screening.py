@@ -2,7 +2,10 @@
 
 from __future__ import annotations
 
+from typing import Literal
+
 import sympy
+from sympy.polys.rings import PolyElement
 
 from symcirc.complaints import listed
 from symcirc.match.candidates import known_value
@@ -15,13 +18,16 @@ from symcirc.match.shapes import power_text
 from symcirc.match.system import Coefficient, Quotient, System
 
 
-def screened(system: System, references: tuple[Coefficient, ...], problem: Problem) -> list[Coefficient]:
-    """Return the coefficients that set conditions on the unknowns.
+def screened(
+    system: System, references: tuple[Coefficient, ...], problem: Problem
+) -> tuple[list[Coefficient], list[PolyElement]]:
+    """Return the coefficients that set conditions on the unknowns, and the relations met by chosen numbers alone.
 
     Raises Refused where one cannot be met: it has another sign than its target for all part values, or only
     chosen quantities set it and these do not give the target.
     """
-    left = []
+    left: list[Coefficient] = []
+    fixed: list[PolyElement] = []
     for group, reference in zip(system.groups, references, strict=True):
         for coefficient in group:
             if coefficient is reference:
@@ -35,8 +41,9 @@ def screened(system: System, references: tuple[Coefficient, ...], problem: Probl
             if holds_any(relation, system.quantities.unknowns):
                 left.append(coefficient)
             else:
-                _check_chosen(coefficient, partner, system)
-    return left
+                _check_chosen(coefficient, partner, system, problem)
+                fixed.append(relation)
+    return left, fixed
 
 
 def partner_of(coefficient: Coefficient, system: System, reference: Coefficient) -> Coefficient:
@@ -52,7 +59,7 @@ def _impossible(one: Coefficient, other: Coefficient, system: System, problem: P
     wanted = _target_text(one, other, system)
     mine, yours = quantities.sign(one.stage), quantities.sign(other.stage)
     ratio = factored(one.stage, quantities) / factored(other.stage, quantities)
-    kind = "gain" if one.where == "numerator" else "sign"
+    kind: Literal["gain", "sign"] = "gain" if one.where == "numerator" else "sign"
     if not ratio.sums and not any(ratio.monomial):
         value = equation_text(expression(ratio, quantities))
         cause = f"{what} of this stage is {value} whatever its parts; the target asks for {wanted}"
@@ -93,7 +100,7 @@ def quotient_expression(quotient: Quotient, system: System) -> sympy.Expr:
     return expression(above / below, system.quantities)
 
 
-def _check_chosen(one: Coefficient, other: Coefficient, system: System) -> None:
+def _check_chosen(one: Coefficient, other: Coefficient, system: System, problem: Problem) -> None:
     """Refuse a relation among chosen quantities that their numbers do not meet."""
     quantities = system.quantities
     start = [quantities.decimals.get(k, quantities.numbers.get(k)) for k in range(quantities.ring.ngens)]
@@ -101,7 +108,7 @@ def _check_chosen(one: Coefficient, other: Coefficient, system: System) -> None:
     value = known_value(relation, start)
     if value is not None and not value:
         return
-    what = name_of(one, other, len(system.groups[0]) - 1)
+    what = name_of(one, other, problem.function.order)
     given = quotient_expression(Quotient(one.stage, other.stage), system)
     names = listed(sorted((str(s) for s in given.free_symbols), key=natural), last="or")
     sentence = f"{what} is {equation_text(given)}, which is not left to be solved for"

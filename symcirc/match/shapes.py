@@ -16,7 +16,7 @@ def shape_name(powers: Iterable[int], order: int) -> str | None:
     ('low-pass', 'high-pass', 'band-pass', 'band-stop', None)
     """
     held = sorted(powers)
-    names = {(0,): "low-pass", (order,): "high-pass"}
+    names: dict[tuple[int, ...], str] = {(0,): "low-pass", (order,): "high-pass"}
     if order and order % 2 == 0:
         names[(order // 2,)] = "band-pass"
         names[tuple(range(0, order + 1, 2))] = "band-stop"

@@ -11,16 +11,16 @@ from symcirc.complaints import InternalFault
 from symcirc.match.branches import Region
 from symcirc.match.candidates import Candidate, Degenerate, candidates, known_value
 from symcirc.match.cases import missing_cases
-from symcirc.match.chains import Chain, chains
+from symcirc.match.chains import Chain, chains, random_point, solutions_at
 from symcirc.match.claims import Claim
 from symcirc.match.counting import count
 from symcirc.match.decimals import reals
 from symcirc.match.problem import Branch, Problem, Refusal, Refused, Solutions
-from symcirc.match.quantities import is_met
+from symcirc.match.quantities import Quantities, is_met
 from symcirc.match.refusals import contradiction, left_open, no_branch, too_few, too_many
 from symcirc.match.screening import partner_of, screened
 from symcirc.match.shapes import check_order, check_shapes
-from symcirc.match.system import System, build_system
+from symcirc.match.system import Coefficient, System, build_system
 from symcirc.match.triangular import triangular
 from symcirc.match.work import DEFAULT_BOUND, Work
 from symcirc.match.writing import Writer
@@ -65,12 +65,14 @@ def solve(
 def _solved(problem: Problem, sign: int, work: Work) -> list[Branch]:
     try:
         return _branches(build_system(problem, sign), problem, work)
-    except Degenerate:
-        pass
+    except Degenerate as degenerate:
+        refusal = degenerate.refusal
     try:
         return _branches(build_system(problem, sign, numbers_in=True), problem, work)
     except Degenerate:
-        raise Refused(contradiction(problem)) from None
+        raise Refused(refusal or contradiction(problem)) from None
+    except Refused as refused:
+        raise Refused(refusal or refused.refusal) from None
 
 
 @dataclass(frozen=True)
@@ -81,6 +83,7 @@ class _Solvable:
     equations: tuple[PolyElement, ...]
     consequences: tuple[PolyElement, ...]
     refusal: Refusal  # where these do not follow
+    fixed: tuple[PolyElement, ...]  # relations that the numbers of chosen quantities meet
 
 
 def _branches(system: System, problem: Problem, work: Work) -> list[Branch]:
@@ -89,18 +92,19 @@ def _branches(system: System, problem: Problem, work: Work) -> list[Branch]:
     found = _chains(solvable, work)
     if not found:
         if quantities.numbers:
-            raise Degenerate  # what contradicts itself in symbols may not for these numbers
+            raise Degenerate(contradiction(problem))  # in symbols; for these numbers it may have a solution
         raise Refused(contradiction(problem))
     branches: list[Branch] = []
     failed: list[tuple[Candidate, Sequence[Claim] | None]] = []
     missed = False
     for chain in found:
-        written = Writer(system, work)
+        met = [e for e in solvable.consequences if not is_met(e, chain.sample)]
+        written = Writer(system, (*solvable.fixed, *met), work)
         for candidate in candidates(chain, quantities):
             region = written.region(candidate)
             if candidate.fails or not _positives_are(candidate, system):
                 failed.append((candidate, None if region is None else region.claims))
-            elif not _follow(solvable.consequences, chain, candidate):
+            elif not _follow(solvable.consequences, candidate, chain, quantities):
                 missed = True
             elif region is not None:
                 _check(candidate, region, solvable)
@@ -118,12 +122,12 @@ def _counted(system: System, problem: Problem) -> _Solvable:
     """Return the equations of a system; raise Refused where there are too many unknowns or one cannot be met."""
     check_shapes(system)
     found = count(system)
-    left = screened(system, found.references, problem)
+    left, fixed = screened(system, found.references, problem)
     if found.rank < len(problem.unknowns):
         raise Refused(too_many(system, found, problem))
     references = dict(zip(system.groups, found.references, strict=True))
 
-    def relation(coefficient: object) -> PolyElement:
+    def relation(coefficient: Coefficient) -> PolyElement:
         group = next(g for g in system.groups if coefficient in g)
         return system.relation(coefficient, partner_of(coefficient, system, references[group]))
 
@@ -134,6 +138,7 @@ def _counted(system: System, problem: Problem) -> _Solvable:
         tuple(relation(c) for c in independent),
         tuple(relation(c) for c in dependent),
         too_few(dependent, system, found, problem),
+        tuple(fixed),
     )
 
 
@@ -153,7 +158,7 @@ def _chains(solvable: _Solvable, work: Work) -> list[Chain]:
         if one.target.above and other.target.above
     ]
     states = [state, *missing_cases(state, quantities, work)]
-    return [c for s in states for c in chains(s, solvable.equations, pool, quantities)]
+    return [c for s in states for c in chains(s, solvable.equations, pool, quantities, work)]
 
 
 def _positives_are(candidate: Candidate, system: System) -> bool:
@@ -165,13 +170,20 @@ def _positives_are(candidate: Candidate, system: System) -> bool:
     return True
 
 
-def _follow(consequences: Sequence[PolyElement], chain: Chain, candidate: Candidate) -> bool:
-    """Tell whether further equations hold: for all numbers, or at least for those that are known."""
-    for equation in consequences:
-        value = known_value(equation, candidate.values)
-        if not (is_met(equation, chain.sample) if value is None else is_met(equation, candidate.values)):
-            return False
-    return True
+def _follow(
+    consequences: Sequence[PolyElement], candidate: Candidate, chain: Chain, quantities: Quantities
+) -> bool:
+    """Tell whether further equations hold for a candidate; at random values of what has no number."""
+    if not consequences:
+        return True
+    if None not in candidate.values:
+        points = [candidate.values]
+    else:
+        point = random_point(quantities)
+        for position, number in quantities.numbers.items():
+            point[position] = number
+        points = [tuple(solution) for solution in solutions_at(chain.steps, point)]
+    return all(is_met(equation, point) for equation in consequences for point in points)
 
 
 def _check(candidate: Candidate, region: Region, solvable: _Solvable) -> None:

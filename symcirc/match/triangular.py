@@ -7,18 +7,22 @@ equation is: a beam of the best partial orders is kept and the best whole one ta
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
+from functools import partial
 from math import prod
 
 from sympy.polys.rings import PolyElement
 
-from symcirc.match.elimination import pseudo_remainder, put_in, subresultants
+from symcirc.match.elimination import pseudo_remainder, put_in, subresultants, without_factor
+from symcirc.match.problem import Refused
 from symcirc.match.quantities import Quantities, by_powers, holds, holds_any
-from symcirc.match.work import Work
+from symcirc.match.work import StepTooLarge, Work, given_up
 
 #: How many partial orders are kept.
 BEAM = 8
+#: Equations with more terms are not factored at the start.
+MOST_FACTORED_TERMS = 60
 
 
 @dataclass(frozen=True)
@@ -31,11 +35,15 @@ class Step:
 
 @dataclass(frozen=True)
 class Pivot:
-    """An unknown eliminated by an equation; ``others`` are the equations that stood beside it."""
+    """An unknown eliminated by an equation; ``others`` are the equations that stood beside it.
+
+    ``dropped`` is a factor of the equation without the unknown, which was taken not to be zero.
+    """
 
     unknown: int
     equation: PolyElement
     others: tuple[PolyElement, ...]
+    dropped: PolyElement
 
 
 @dataclass(frozen=True)
@@ -62,16 +70,18 @@ def triangular(
 ) -> State | None:
     """Return the best triangular form found, None where the equations contradict each other.
 
-    Where the equations do not determine all unknowns, some stay ``open`` in what is returned.
+        Where the equations do not determine all unknowns, some stay ``open`` in what is returned. Raises Refused,
+        kind "given up", where every way is too long.
 
-    >>> from symcirc.match.quantities import plain_quantities
-    >>> quantities = plain_quantities("x y", "a")
-    >>> x, y, a = quantities.ring.gens
-    >>> [step.equation for step in triangular([x * y - 1, x + y - a], (0, 1), quantities, Work()).steps]
-    [x**2 - x*a + 1, x*y - 1]
+        >>> from symcirc.match.problem import Refused
+    from symcirc.match.quantities import plain_quantities
+        >>> quantities = plain_quantities("x y", "a")
+        >>> x, y, a = quantities.ring.gens
+        >>> [step.equation for step in triangular([x * y - 1, x + y - a], (0, 1), quantities, Work()).steps]
+        [x**2 - x*a + 1, x*y - 1]
     """
     search = _Search(quantities, work)
-    start = search.state(equations, State((), frozenset(unknowns)))
+    start = search.state(search.learned(equations), State((), frozenset(unknowns)))
     frontier = [] if start is None else [start]
     finished: list[State] = []
     while frontier:
@@ -82,6 +92,8 @@ def triangular(
         for state in grown:
             unique.setdefault((frozenset(state.equations), state.open), state)
         frontier = list(unique.values())[:BEAM]
+    if not finished and search.has_left_ways:
+        raise Refused(given_up())
     return min(finished, key=search.final_cost) if finished else None
 
 
@@ -99,6 +111,24 @@ class _Search:
     def __init__(self, quantities: Quantities, work: Work) -> None:
         self.quantities = quantities
         self.work = work
+        self.has_left_ways = False
+        self.positive: list[PolyElement] = []  # polynomials that are never zero, met as factors
+
+    def learned(self, equations: Iterable[PolyElement]) -> list[PolyElement]:
+        """Return equations without the factors that are never zero, and keep these to divide by later."""
+        kept = []
+        for equation in equations:
+            if not equation or len(equation) > MOST_FACTORED_TERMS:
+                kept.append(equation)
+                continue
+            left = self.quantities.ring.one
+            for factor, _ in equation.factor_list()[1]:
+                if not self.quantities.sign(factor):
+                    left *= factor
+                elif not factor.is_monomial and factor not in self.positive:
+                    self.positive.append(factor)
+            kept.append(left)
+        return kept
 
     def final_cost(self, state: State) -> tuple[int, int, int]:
         """Return a key that sorts whole forms: lowest degree, fewest open cases, shortest."""
@@ -111,23 +141,40 @@ class _Search:
         linear = [
             (e, k) for e in state.equations for k in sorted(state.open, reverse=True) if e.degree(k) == 1
         ]
+        ways: list[Callable[[], State | None]]
         if linear:
-            grown = [self._by_linear(state, e, k) for e, k in linear]
+            ways = [partial(self._by_linear, state, e, k) for e, k in linear]
         elif alone := [e for e in state.equations if len(self._held(e, state)) == 1]:
-            grown = [self._by_root(state, e) for e in alone]
+            ways = [partial(self._by_root, state, e) for e in alone]
         else:
-            grown = [self._by_resultant(state)]
-        return [s for s in grown if s is not None]
+            ways = [partial(self._by_resultant, state)]
+        return [s for s in map(self._gone, ways) if s is not None]
+
+    def _gone(self, way: Callable[[], State | None]) -> State | None:
+        """Return where a way leads; None where it ends in a contradiction, or is left as too long."""
+        try:
+            return way()
+        except StepTooLarge:
+            self.has_left_ways = True
+            return None
 
     def _held(self, equation: PolyElement, state: State) -> list[int]:
         return [k for k in sorted(state.open) if holds(equation, k)]
 
     def _by_linear(self, state: State, equation: PolyElement, unknown: int) -> State | None:
         others = tuple(e for e in state.equations if e is not equation)
-        grown = [put_in(e, unknown, equation, self.quantities, self.work) for e in others]
-        pivot = Pivot(unknown, equation, others)
+        rest, lead = by_powers(equation, unknown)
+        dropped = lead.gcd(rest)
+        linear = equation if dropped.is_ground else self.quantities.cleaned(equation.exquo(dropped))
+        grown = [self._plain(put_in(e, unknown, linear, self.quantities, self.work)) for e in others]
+        pivot = Pivot(unknown, linear, others, dropped)
         after = State((), state.open - {unknown}, state.roots, (*state.pivots, pivot))
         return self.state(grown, after)
+
+    def _plain(self, equation: PolyElement) -> PolyElement:
+        for factor in self.positive:
+            equation = without_factor(equation, factor, self.quantities)
+        return equation
 
     def _by_root(self, state: State, equation: PolyElement) -> State | None:
         (unknown,) = self._held(equation, state)
@@ -149,7 +196,12 @@ class _Search:
             sequence = [self.quantities.cleaned(p) for p in subresultants(first, other, unknown, self.work)]
             grown += [sequence[-1]] if not holds(sequence[-1], unknown) else []
             pivot = min([pivot, *sequence[2:]], key=lambda p: p.degree(unknown) if holds(p, unknown) else 99)
-        after = State((), state.open - {unknown}, state.roots, (*state.pivots, Pivot(unknown, pivot, ())))
+        after = State(
+            (),
+            state.open - {unknown},
+            state.roots,
+            (*state.pivots, Pivot(unknown, pivot, (), self.quantities.ring.one)),
+        )
         return self.state(grown, after)
 
     def state(self, equations: Iterable[PolyElement], after: State) -> State | None:
@@ -163,8 +215,11 @@ class _Search:
                 return None
             if holds_any(equation, after.open):
                 kept.append(equation)
-            elif (roots := self._with(roots, equation)) is None:
+                continue
+            merged = self._with(roots, equation)
+            if merged is None:
                 return None
+            roots = merged
         return State(tuple(kept), after.open, roots, after.pivots)
 
     def _with(self, roots: tuple[Step, ...], equation: PolyElement) -> tuple[Step, ...] | None:

@@ -6,8 +6,14 @@ from collections.abc import Callable
 
 from symcirc.match.problem import Refusal, Refused
 
-#: Products of terms after which a match is given up; a few seconds.
+#: Products of terms after which a match is given up; some ten seconds.
 DEFAULT_BOUND = 3_000_000
+#: Products of terms that one step may take; a way that needs more is left.
+STEP_BOUND = 100_000
+
+
+class StepTooLarge(Exception):
+    """A step of the algebra would take too long; another way may be shorter."""
 
 
 class Work:
@@ -20,14 +26,20 @@ class Work:
     def spend(self, products: int) -> None:
         """Count work that is about to be done.
 
-        Raises Refused, kind "given up", where it is beyond the bound or ``should_stop`` says so.
+        Raises StepTooLarge where it is too much for one step, and Refused, kind "given up", where all together
+        is beyond the bound or ``should_stop`` says so.
         """
+        if products > STEP_BOUND:
+            raise StepTooLarge
         self._left -= products
         if self._left < 0 or self._should_stop():
-            raise Refused(
-                Refusal(
-                    "given up",
-                    "the design equations of this stage grew too large to be solved",
-                    "choose other parts, tie equal parts together, or match a cascade stage by stage",
-                )
-            )
+            raise Refused(given_up())
+
+
+def given_up() -> Refusal:
+    """Return the refusal of a match that takes too long."""
+    return Refusal(
+        "given up",
+        "the design equations of this stage grew too large to be solved",
+        "choose other parts, tie equal parts together, or match a cascade stage by stage",
+    )

@@ -2,28 +2,34 @@
 
 from __future__ import annotations
 
-from collections.abc import Hashable
+from collections.abc import Hashable, Iterable
 from dataclasses import replace
 
 import sympy
+from sympy.polys.rings import PolyElement
 
 from symcirc.match.branches import Region, region_of
-from symcirc.match.candidates import Candidate
+from symcirc.match.candidates import Candidate, known_value
 from symcirc.match.claims import Claim, factors_of
+from symcirc.match.elimination import put_in
 from symcirc.match.forms import Form
 from symcirc.match.formulas import quadratic_formula, ratio_formula, root_record
 from symcirc.match.inequalities import condition
 from symcirc.match.problem import Branch, Condition, Equation, Root
 from symcirc.match.quadratics import Quadratic
-from symcirc.match.quantities import is_met
+from symcirc.match.quantities import holds_any, is_met
 from symcirc.match.system import System
-from symcirc.match.work import Work
+from symcirc.match.work import StepTooLarge, Work
 
 
 class Writer:
-    """Writes the branches of one chain down; what two branches have in common is worked out once."""
+    """Writes the branches of one chain down; what two branches have in common is worked out once.
 
-    def __init__(self, system: System, work: Work) -> None:
+    ``fixed`` are relations that hold for the numbers given, not for all: they become equalities.
+    """
+
+    def __init__(self, system: System, fixed: Iterable[PolyElement], work: Work) -> None:
+        self.fixed = tuple(fixed)
         self.system = system
         self.quantities = system.quantities
         self.work = work
@@ -47,7 +53,7 @@ class Writer:
             for form, choice in zip(candidate.forms, candidate.choices, strict=True)
         )
         formulas = {e.part: e.formula for e in equations}
-        conditions = self._double_roots(candidate)
+        conditions = [*self._equalities(candidate), *self._double_roots(candidate)]
         conditions += [self._condition(claim) for claim in region.claims]
         for k in region.open:
             formula = formulas[self.quantities.name(k)]
@@ -78,6 +84,30 @@ class Writer:
         if claim not in self._conditions:
             self._conditions[claim] = condition(claim, self.quantities)
         return self._conditions[claim]
+
+    def _equalities(self, candidate: Candidate) -> list[Condition]:
+        """Return the relations among chosen quantities that their numbers meet."""
+        met = [
+            factor
+            for relation in self.fixed
+            for factor, _ in factors_of(self._in_chosen(relation, candidate))
+        ]
+        return [
+            condition(Claim((factor,)), self.quantities, "=")
+            for factor in met
+            if known_value(factor, candidate.values) == 0 and not holds_any(factor, self.quantities.unknowns)
+        ]
+
+    def _in_chosen(self, relation: PolyElement, candidate: Candidate) -> PolyElement:
+        """Return a relation with the parts from linear equations put in, as far as that stays short."""
+        try:
+            for form in reversed(candidate.forms):
+                if form.degree == 1 and form.power == 1:
+                    equation = form.step.equation
+                    relation = put_in(relation, form.unknown, equation, self.quantities, self.work)
+        except StepTooLarge:
+            pass
+        return relation
 
     def _double_roots(self, candidate: Candidate) -> list[Condition]:
         """Return the equalities by which the two roots of a quadratic step are one."""

@@ -4,34 +4,57 @@ from __future__ import annotations
 
 from typing import Any
 
-from symcirc.derivation import Answer, Derivation
+from symcirc.derivation import Answer, BigAnswer, Derivation
+from symcirc.nodal import build_system
 from symcirc.nodal.text import equation_text
-from symcirc.report.numbers import numbers_for
+from symcirc.report.big import sequence_of
+from symcirc.report.numbers import expanded_answers, numbers_for
 from symcirc.transfer.evaluate import coefficients
 from symcirc.transfer.standard import coefficient_forms, monic_forms, texts
 
 
 def derive_json(derivation: Derivation) -> dict[str, Any]:
     """Return the transfer functions as strings, ascending powers of s."""
-    return _object(derivation, {a.ask.name: _symbols(a) for a in derivation.answers})
+    return _object(derivation, {a.ask.name: _answer(derivation, a) for a in derivation.answers})
 
 
 def values_json(derivation: Derivation) -> dict[str, Any]:
     """Return the coefficients for the fixed numbers; raises Complaint where one of them is missing."""
-    return _object(derivation, {a.ask.name: _values(derivation, a) for a in derivation.answers})
+    return _object(derivation, {a.ask.name: _values(derivation, a) for a in expanded_answers(derivation)})
 
 
 def equations_json(derivation: Derivation) -> dict[str, Any]:
     """Return the nodal equations that every answer is solved from, as strings."""
-    asks = {
-        a.ask.name: {"equations": [equation_text(e) for e in a.system.equations]} for a in derivation.answers
-    }
+    asks = {}
+    for answer in derivation.answers:
+        system = build_system(derivation.circuit, answer.setup)
+        asks[answer.ask.name] = {"equations": [equation_text(equation) for equation in system.equations]}
     return _object(derivation, asks)
 
 
 def _object(derivation: Derivation, asks: dict[str, Any]) -> dict[str, Any]:
     warnings = [remark.as_json() for remark in derivation.remarks]
     return {"stage": derivation.sheet.title, "ask": asks, "warnings": warnings}
+
+
+def _answer(derivation: Derivation, answer: Answer | BigAnswer) -> dict[str, Any]:
+    return _big(derivation, answer) if isinstance(answer, BigAnswer) else _symbols(answer)
+
+
+def _big(derivation: Derivation, answer: BigAnswer) -> dict[str, Any]:
+    """A big answer: the coefficients in terms of ``definitions``, each in terms of those before it."""
+    sequence = sequence_of(derivation, answer)
+    highest = sequence.denominator[-1]
+    return {
+        "definitions": [list(definition) for definition in sequence.definitions],
+        "numerator": list(sequence.numerator),
+        "denominator": list(sequence.denominator),
+        "monic": {
+            "numerator": [c if c == "0" else f"({c})/({highest})" for c in sequence.numerator],
+            "denominator": [*(f"({c})/({highest})" for c in sequence.denominator[:-1]), "1"],
+        },
+        "order": len(sequence.denominator) - 1,
+    }
 
 
 def _symbols(answer: Answer) -> dict[str, Any]:

@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 
-from symcirc.derivation import Answer, Derivation
+from symcirc.derivation import Answer, BigAnswer, Derivation
+from symcirc.nodal import build_system
 from symcirc.nodal.text import equation_latex, equation_text
 from symcirc.report.facts import Fact, facts_of
-from symcirc.report.numbers import numbers_for
+from symcirc.report.big import sequence_of
+from symcirc.report.numbers import expanded_answers, numbers_for
 from symcirc.report.quantities import ask_text
 from symcirc.transfer.evaluate import coefficients
-from symcirc.transfer.form import Form
 from symcirc.transfer.latex import latex, latex_function, latex_name
 from symcirc.transfer.layout import WIDTH, broken, function_text
 from symcirc.transfer.standard import coefficient_forms, monic_forms
@@ -32,7 +33,7 @@ def derive_text(derivation: Derivation) -> Iterator[str]:
     yield derivation.sheet.title
     for answer in derivation.answers:
         yield ""
-        yield from _answer(derivation, answer)
+        yield from _big(derivation, answer) if isinstance(answer, BigAnswer) else _answer(derivation, answer)
 
 
 def _answer(derivation: Derivation, answer: Answer) -> Iterator[str]:
@@ -44,25 +45,49 @@ def _answer(derivation: Derivation, answer: Answer) -> Iterator[str]:
         yield ""
         yield "standard form, by powers of s"
         forms = monic_forms(function)
-        yield from _side("over", forms.numerator)
-        yield from _side("under", forms.denominator)
+        yield from _coefficients("over", map(text, forms.numerator))
+        yield from _coefficients("under", map(text, forms.denominator))
     yield ""
     yield from _facts(facts_of(derivation, answer))
-    yield (
-        f"checked: agrees with the numeric solve of the circuit at {answer.evidence.points} random points "
-        f"(to {TOLERANCE:.0e})"
+    yield _checked(answer)
+
+
+def _big(derivation: Derivation, answer: BigAnswer) -> Iterator[str]:
+    """Yield a big answer: what each name stands for, then the coefficients in terms of these names."""
+    sequence = sequence_of(derivation, answer)
+    over, under = answer.products
+    yield ask_text(answer.ask)
+    yield ""
+    yield f"{over:,} products over the line and {under:,} under it, by way of these names:"
+    wide = max((len(name) for name, _ in sequence.definitions), default=0)
+    for name, expression in sequence.definitions:
+        lines = broken(f"{name:{wide}} = {expression}", WIDTH - 2)
+        yield from (("  " if k == 0 else " " * (wide + 5)) + readable(line) for k, line in enumerate(lines))
+    yield ""
+    yield "coefficients by powers of s"
+    for label, side in (("over", sequence.numerator), ("under", sequence.denominator)):
+        yield from _coefficients(label, side)
+    yield ""
+    yield _checked(answer)
+
+
+def _checked(answer: Answer | BigAnswer) -> str:
+    ways = "elimination and " if isinstance(answer, Answer) and answer.eliminated else ""
+    points = (
+        f"the numeric solve of the circuit at {answer.evidence.points} random points (to {TOLERANCE:.0e})"
     )
+    return f"checked: agrees with {ways}{points}"
 
 
-def _side(label: str, forms: tuple[Form, ...]) -> Iterator[str]:
+def _coefficients(label: str, side: Iterable[str]) -> Iterator[str]:
     """Yield the coefficients of one polynomial, highest power first, those that are zero left out."""
+    coefficients = list(side)
     first = True
-    for power in reversed(range(len(forms))):
-        written = text(forms[power])
-        if written == "0" and len(forms) > 1:
+    for power in reversed(range(len(coefficients))):
+        if coefficients[power] == "0" and len(coefficients) > 1:
             continue
-        lines = broken(written, WIDTH - 16)
         head = f"  {label if first else '':7}{_power(power):>4}   "
+        lines = broken(coefficients[power], WIDTH - len(head))
         yield head + readable(lines[0])
         yield from (" " * len(head) + readable(line) for line in lines[1:])
         first = False
@@ -98,7 +123,7 @@ def _indented(lines: list[str]) -> Iterator[str]:
 def values_text(derivation: Derivation) -> Iterator[str]:
     """Yield the coefficients for the fixed numbers, by powers of s; raises Complaint where one is missing."""
     yield derivation.sheet.title
-    for answer in derivation.answers:
+    for answer in expanded_answers(derivation):
         sides = coefficients(answer.function, numbers_for(derivation.sheet, answer))
         yield ""
         yield ask_text(answer.ask)
@@ -111,7 +136,7 @@ def equations_text(derivation: Derivation) -> Iterator[str]:
     """Yield the nodal equations that every answer is solved from."""
     yield derivation.sheet.title
     for answer in derivation.answers:
-        equations = answer.system.equations
+        equations = build_system(derivation.circuit, answer.setup).equations
         wide = max(len(equation.label) for equation in equations)
         yield ""
         yield f"{ask_text(answer.ask)}: currents leaving each node, and the law of each source and device"
@@ -130,7 +155,7 @@ def _tied(derivation: Derivation) -> Iterator[str]:
 
 def derive_latex(derivation: Derivation) -> Iterator[str]:
     """Yield a LaTeX display for each ask: the function, its standard form, and its facts in symbols."""
-    for answer in derivation.answers:
+    for answer in expanded_answers(derivation):
         name, function = latex_name(answer.ask.name), answer.function
         yield f"% {ask_text(answer.ask)}"
         rows = [f"{name}(s) &= {latex_function(coefficient_forms(function))}"]
@@ -147,7 +172,7 @@ def equations_latex(derivation: Derivation) -> Iterator[str]:
     """Yield the nodal equations of every answer in LaTeX."""
     for answer in derivation.answers:
         yield f"% {ask_text(answer.ask)}"
-        equations = answer.system.equations
+        equations = build_system(derivation.circuit, answer.setup).equations
         yield from _aligned([equation_latex(e, latex_name).replace(" = ", " &= ", 1) for e in equations])
 
 

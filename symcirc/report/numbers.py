@@ -7,7 +7,7 @@ from collections.abc import Mapping
 import sympy
 
 from symcirc.complaints import Complaint, listed
-from symcirc.derivation import Answer
+from symcirc.derivation import Answer, BigAnswer, Derivation
 from symcirc.sheet.model import Sheet
 from symcirc.transfer.function import symbols_in
 
@@ -29,3 +29,17 @@ def numbers_for(sheet: Sheet, answer: Answer) -> Mapping[str, sympy.Expr]:
             f"fix {', '.join(f'{name} = value' for name in missing[:3])}",
         )
     return sheet.numbers
+
+
+def expanded_answers(derivation: Derivation) -> list[Answer]:
+    """Return the answers of a derivation, all of which must be expanded; raises Complaint for one that is too big."""
+    answers = []
+    for answer in derivation.answers:
+        if isinstance(answer, BigAnswer):
+            raise Complaint(
+                answer.ask.place,
+                f"`{answer.ask.name}` is not expanded: it has {sum(answer.products):,} products",
+                f"have it expanded: --most {sum(answer.products)}",
+            )
+        answers.append(answer)
+    return answers

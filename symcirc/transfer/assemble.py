@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from functools import cached_property
@@ -11,7 +12,7 @@ from sympy.polys.domains import QQ
 from sympy.polys.rings import PolyRing
 
 from symcirc.transfer.cost import is_reactive
-from symcirc.transfer.form import Form, Integer, Negative, Root, Sum, Symbol, power, quotient
+from symcirc.transfer.form import ONE, Form, Integer, Negative, Root, Sum, Symbol, power, quotient
 from symcirc.transfer.residues import Element
 from symcirc.transfer.ties import natural_key
 
@@ -86,12 +87,11 @@ def number_pieces(domain: Element, number: Element) -> tuple[bool, list[Form], l
     negative = is_negative(domain, number)
     if domain == QQ:
         return negative, _unless_one(abs(int(number.numerator))), _unless_one(int(number.denominator))
-    size = domain.to_sympy(-number if negative else number)
-    content, rest = size.as_content_primitive()
-    if rest.is_negative:
-        content, rest = -content, -rest
-    above = _unless_one(abs(int(content.p)))
-    return negative, [*above, *([] if rest == 1 else [number_form(rest)])], _unless_one(int(content.q))
+    terms = [t.as_coeff_Mul() for t in sympy.Add.make_args(domain.to_sympy(-number if negative else number))]
+    above = math.gcd(*(int(rational.p) for rational, _ in terms))
+    below = math.lcm(*(int(rational.q) for rational, _ in terms))
+    rest = number_form(sympy.Add(*(rational * below / above * root for rational, root in terms)))
+    return negative, [*_unless_one(above), *([] if rest == ONE else [rest])], _unless_one(below)
 
 
 def _unless_one(number: int) -> list[Form]:
@@ -108,7 +108,8 @@ def number_form(number: sympy.Expr) -> Form:
         size = quotient([Integer(abs(int(number.p)))], [Integer(int(number.q))])
         return Negative(size) if number < 0 else size
     if number.is_Add:
-        return joined([((k, ()), number_form(term)) for k, term in enumerate(number.as_ordered_terms())])
+        terms = sorted(number.args, key=lambda term: (not term.is_Rational, sympy.default_sort_key(term)))
+        return joined([((k, ()), number_form(term)) for k, term in enumerate(terms)])
     if number.is_Mul:
         content, rest = number.as_coeff_Mul()
         sign = content < 0

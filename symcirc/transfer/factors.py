@@ -14,15 +14,17 @@ from __future__ import annotations
 import math
 from collections.abc import Iterable
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
 from sympy.polys.domains import QQ
 from sympy.polys.rings import PolyElement, PolyRing
 
+from symcirc.transfer.common import remove_common_factor
 from symcirc.transfer.residues import Element, Residues, residues_for
 
-#: Beyond these a factor with a symbol to a higher power is left as it is: to factor it may take long.
+#: Beyond these a factor with every symbol to a higher power is left as it is: to factor it may take long.
 MOST_TERMS, MOST_SYMBOLS, HIGHEST_DEGREE = 24, 6, 12
 
 
@@ -72,21 +74,22 @@ def primitive(polynomial: PolyElement) -> tuple[Element, PolyElement]:
     """Return (number, polynomial / number), the latter with whole coprime coefficients, the first positive.
 
     Over a field with roots that is so where all coefficients are rational multiples of the first; else the
-    coefficients are left as they are.
+    coefficients are left as they are. The polynomial is a new one, as sympy's division leaves a hash behind
+    that is not that of its result, and factors are looked up by their hash.
 
     >>> ring = PolyRing(["R1", "R2"], QQ)
-    >>> primitive(ring.gens[0] / 2 - ring.gens[1] / 3)
-    (MPQ(1,6), 3*R1 - 2*R2)
+    >>> primitive(ring.gens[0] / 2 - ring.gens[1] / 3)[1]
+    3*R1 - 2*R2
     """
     ring = polynomial.ring
     first = polynomial.LC
     if ring.domain == QQ:
         number = polynomial.content()
         number = -number if first < 0 else number
-        return number, polynomial if number == 1 else polynomial.quo_ground(number)
+        return number, polynomial.copy() if number == 1 else polynomial.quo_ground(number)
     ratios = [(coefficient / first).to_list() for coefficient in polynomial.values()]
     if any(len(ratio) > 1 for ratio in ratios):
-        return ring.domain.one, polynomial
+        return ring.domain.one, polynomial.copy()
     number = first * ring.domain(_content(ratio[0] for ratio in ratios))
     return number, polynomial.mul_ground(ring.domain.one / number)
 
@@ -189,21 +192,45 @@ def _read_off(polynomial: PolyElement, members: list[int]) -> PolyElement:
 # symbols to a higher power ----------------------------------------------------------------------------------
 
 
-def _powers(polynomial: PolyElement) -> list[tuple[PolyElement, int]]:
-    """Factor a polynomial whose symbols all hang together, where it is small and may have factors at all."""
-    ring = polynomial.ring
+@lru_cache(maxsize=2048)
+def _powers(polynomial: PolyElement) -> tuple[tuple[PolyElement, int], ...]:
+    """Factor a polynomial whose symbols all hang together.
+
+    With a symbol x that is never squared it is a x + b: the common factor of a and b comes out, and what is
+    left is irreducible. Without such a symbol sympy factors it where it is small.
+    """
     highest = [max(column) for column in zip(*polynomial, strict=True)]
-    present = [k for k, degree in enumerate(highest) if degree]
-    if (
-        max(highest) <= 1
-        or ring.domain != QQ
-        or len(polynomial) > MOST_TERMS
-        or len(present) > MOST_SYMBOLS
-        or max(map(sum, polynomial)) > HIGHEST_DEGREE
-    ):
-        return [(polynomial, 1)]
-    small = PolyRing([ring.symbols[k] for k in present], QQ, ring.order)
-    _, factors = small.from_dict(
+    if max(highest) <= 1 or polynomial.ring.domain != QQ:
+        return ((polynomial, 1),)
+    if 1 not in highest:
+        return _factored_by_sympy(polynomial, [k for k, degree in enumerate(highest) if degree])
+    first, second = _linear(polynomial, highest.index(1))
+    common = primitive(remove_common_factor(first, second)[2])[1]
+    if common.is_ground:
+        return ((polynomial, 1),)
+    factors = factorize(common).polynomials
+    return ((primitive(polynomial.exquo(common))[1], 1), *factors)
+
+
+def _linear(polynomial: PolyElement, k: int) -> tuple[PolyElement, PolyElement]:
+    """Return (a, b) of a polynomial a x + b in its generator x at place k."""
+    ring = polynomial.ring
+    first, second = ring.zero, ring.zero
+    for monomial, coefficient in polynomial.items():
+        if monomial[k]:
+            first[(*monomial[:k], 0, *monomial[k + 1 :])] = coefficient
+        else:
+            second[monomial] = coefficient
+    return first, second
+
+
+def _factored_by_sympy(polynomial: PolyElement, present: list[int]) -> tuple[tuple[PolyElement, int], ...]:
+    ring = polynomial.ring
+    small = len(polynomial) <= MOST_TERMS and len(present) <= MOST_SYMBOLS
+    if not small or max(map(sum, polynomial)) > HIGHEST_DEGREE:
+        return ((polynomial, 1),)
+    inner = PolyRing([ring.symbols[k] for k in present], QQ, ring.order)
+    _, factors = inner.from_dict(
         {tuple(m[k] for k in present): c for m, c in polynomial.items()}
     ).factor_list()
 
@@ -216,4 +243,4 @@ def _powers(polynomial: PolyElement) -> list[tuple[PolyElement, int]]:
             full[tuple(exponents)] = coefficient
         return primitive(full)[1]
 
-    return [(back(factor), exponent) for factor, exponent in factors]
+    return tuple((back(factor), exponent) for factor, exponent in factors)

@@ -56,8 +56,7 @@ def latex(form: Form) -> str:
         case Power():
             base = _factor(form.base, (Sum, Negative, Divided, Product, Power, Root))
             return f"{base}^{{{form.exponent}}}"
-        case Root():
-            return rf"\sqrt{{{latex(form.operand)}}}"
+    return rf"\sqrt{{{latex(form.operand)}}}"
 
 
 def latex_function(forms: Forms) -> str:

@@ -10,7 +10,7 @@ from symcirc.transfer.standard import Forms
 from symcirc.transfer.text import text
 
 WIDTH = 100
-#: How far to the right the lines of a broken product go, and the least width of a bracket's lines.
+#: How far to the right the lines of a broken product go, and how much room a broken bracket must have.
 _INDENT, _NARROWEST = 4, 40
 
 
@@ -90,12 +90,12 @@ def _broken_term(term: str, width: int) -> list[str]:
     lines = [""]
     for factor in _pieces(term, r"(?<!\*)\*(?!\*)|/"):
         begun = len(lines[-1])
-        if begun + len(factor) <= width:
+        if (not begun and "(" not in factor) or begun + len(factor) <= width:
             lines[-1] += factor
         elif len(factor) <= width - _INDENT or "(" not in factor:
             lines.append(" " * _INDENT + factor)
         else:
-            if begun > width // 2:
+            if begun + _NARROWEST > width:
                 lines.append(" " * _INDENT)
             lines[-1:] = _broken_bracket(lines[-1], factor, width)
     return lines

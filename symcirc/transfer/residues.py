@@ -167,12 +167,11 @@ def _value(form: Form, point: Residues, names: Mapping[str, int]) -> int:
             return pow(_value(form.base, point, names), form.exponent, point.prime)
         case Negative():
             return -_value(form.operand, point, names) % point.prime
-        case Root():
-            return point.number(point.ring.domain.from_sympy(number_of(form)))
+    return point.number(point.ring.domain.from_sympy(number_of(form)))
 
 
 def number_of(form: Form) -> sympy.Expr:
-    """Return a form without names as sympy's exact number.
+    """Return a form without names and powers as sympy's exact number; raises ValueError for any other.
 
     >>> number_of(Sum((Integer(1), Root(Integer(8)))))
     1 + 2*sqrt(2)
@@ -186,14 +185,11 @@ def number_of(form: Form) -> sympy.Expr:
             return sympy.Mul(*(number_of(factor) for factor in form.factors))
         case Divided():
             return number_of(form.above) / number_of(form.below)
-        case Power():
-            return number_of(form.base) ** form.exponent
         case Negative():
             return -number_of(form.operand)
         case Root():
             return sympy.sqrt(number_of(form.operand))
-        case Symbol():
-            raise ValueError(f"{form.name} is not a number")
+    raise ValueError(f"{form} is not a number")
 
 
 def require_equal(form: Form, above: PolyElement, below: PolyElement) -> None:

@@ -78,6 +78,7 @@ def _number_powers(ring: PolyRing, number: Element) -> Powers:
         return powers
     for whole, side in ((int(rational.p), 1), (int(rational.q), -1)):
         for factor, exponent in factorint(whole, limit=LARGEST_PRIME).items():
+            factor, exponent = int(factor), int(exponent)
             root = math.isqrt(factor)
             square = root * root == factor
             powers[ring(root if square else factor)] += side * exponent * (2 if square else 1)

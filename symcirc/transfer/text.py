@@ -5,12 +5,13 @@ The text means the same in the stage sheet's language and in most programming la
 
 from __future__ import annotations
 
-from symcirc.transfer.form import Divided, Form, Integer, Negative, Power, Product, Root, Sum, Symbol
+from symcirc.transfer.form import Divided, Form, Integer, Negative, Power, Product, Sum, Symbol
 
 
 def text(form: Form) -> str:
     """Return a form as plain arithmetic.
 
+    >>> from symcirc.transfer.form import Root
     >>> r1, c1 = Symbol("R1"), Symbol("C1")
     >>> text(Negative(Divided(Sum((Integer(1), Negative(r1))), Product((r1, Root(c1))))))
     '-(1 - R1)/(R1*sqrt(C1))'
@@ -32,8 +33,7 @@ def text(form: Form) -> str:
         case Power():
             base = _factor(form.base, (Sum, Negative, Divided, Product, Power))
             return f"{base}**{form.exponent}"
-        case Root():
-            return f"sqrt({text(form.operand)})"
+    return f"sqrt({text(form.operand)})"
 
 
 def _sum(form: Sum) -> str:

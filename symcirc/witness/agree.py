@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 import random
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from typing import Any
 
@@ -25,6 +25,8 @@ POINTS = 4
 TOLERANCE = 1e-9
 #: A matrix that magnifies rounding more than this is not used as evidence; another point is taken.
 WORST_CONDITION = 1e5
+#: The same for a circuit too big for digits beyond floats.
+BIG_CONDITION = 1e10
 MOST_TRIES = 40
 #: Both values smaller than this count as zero: a function that is zero comes out of the solve as rounding.
 SMALLEST = 1e-12
@@ -118,6 +120,34 @@ def confirm(
     return _confirm_precisely(circuit, setup, ties, function, free)
 
 
+def confirm_values(
+    circuit: Circuit,
+    setup: Setup,
+    ties: Mapping[str, Expression],
+    value: Callable[[Mapping[str, Any], complex], complex],
+) -> Evidence:
+    """Compare an answer that is not expanded with the numeric solve, as :func:`confirm` does a function.
+
+    ``value`` gives the ratio for numbers of all symbols at one complex frequency, a loop gain without its -A.
+    A big circuit's matrix magnifies rounding more, so its condition is allowed for: a departure is taken for
+    rounding up to 1e-14 times the condition where that is more than the tolerance.
+    """
+    generator = random.Random(f"{setup.ask} {len(circuit.parts)}")
+    free = sorted(_free_symbols(circuit, ties))
+    departures: list[float] = []
+    for _ in range(MOST_TRIES):
+        values, s = _random_point(free, generator)
+        there, condition = numeric_ratio(circuit, setup, ties, values, s)
+        if not condition < BIG_CONDITION:
+            continue
+        known = complete(values, ties, s)
+        here = value(known, s) * _loop_factor(setup, known)
+        departures.append(_departure(setup, here, there, max(TOLERANCE, 1e-14 * condition)))
+        if len(departures) == POINTS:
+            return Evidence(POINTS, max(departures))
+    raise InternalFault(f"no point was found at which {setup.ask} could be confirmed by a numeric solve")
+
+
 def _confirm_precisely(
     circuit: Circuit,
     setup: Setup,
@@ -146,12 +176,12 @@ def _random_point(free: list[str], generator: random.Random) -> tuple[dict[str, 
     return values, complex(generator.uniform(0.1, 0.6), generator.uniform(0.6, 1.6))
 
 
-def _departure(setup: Setup, here: Any, there: Any) -> float:
+def _departure(setup: Setup, here: Any, there: Any, tolerance: float = TOLERANCE) -> float:
     size = max(abs(here), abs(there))
     if size < SMALLEST:
         return 0.0
     departure = float(abs(here - there) / size)
-    if not departure <= TOLERANCE:
+    if not departure <= tolerance:
         raise InternalFault(
             f"the derived {setup.ask} is {complex(here):.12g}, "
             f"and the numeric solve of the circuit gives {complex(there):.12g}"

@@ -113,7 +113,7 @@ class Network:
         """Return the condition number of the matrix, its rows scaled: how far rounding can be magnified."""
         scale = np.abs(self.matrix).max(axis=1, keepdims=True)
         scale[scale == 0] = 1.0
-        return float(np.linalg.cond(self.matrix / scale))
+        return float(np.linalg.cond(self.matrix / scale, 1))
 
     def ratio(self, solve: Callable[[Array, Array], Array] = np.linalg.solve) -> Any:
         """Return the asked ratio; raises ``numpy.linalg.LinAlgError`` where the matrix is singular."""

@@ -1,0 +1,1 @@
+"""The two-graph engine: numerator and denominator straight from the graph."""
