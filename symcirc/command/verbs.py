@@ -44,11 +44,26 @@ def derive(words: Namespace, progress: ProgressLine) -> int:
     sheet = read_sheet(read_file(words.sheet))
     wanted = _wanted(sheet, words.ask)
     posed = (pose_real if words.real else pose)(sheet)
-    if words.terms or words.largest:
+    if words.shift:
+        _shift(words, sheet, wanted, progress)
+    elif words.terms or words.largest:
         _unexpanded(words, posed, wanted, progress)
     else:
         _expanded(words, posed, wanted, progress)
     return 0
+
+
+def _shift(words: Namespace, sheet: Sheet, wanted: set[str] | None, progress: ProgressLine) -> None:
+    from symcirc.derivation import MOST_PRODUCTS, pose, pose_real
+    from symcirc.derivation import derive as derive_posed
+    from symcirc.report.shift import shift_json, shift_text
+
+    most = words.most or MOST_PRODUCTS
+    ideal, real = (derive_posed(posed, wanted, most, progress) for posed in (pose(sheet), pose_real(sheet)))
+    if words.json:
+        _print_json(shift_json(ideal, real), progress)
+    else:
+        _print_text(shift_text(ideal, real), ideal.remarks, progress)
 
 
 def _unexpanded(words: Namespace, posed: Posed, wanted: set[str] | None, progress: ProgressLine) -> None:

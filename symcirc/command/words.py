@@ -62,6 +62,7 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     what.add_argument(
         "--largest", type=_count, metavar="K", help="the K largest products of every coefficient"
     )
+    what.add_argument("--shift", action="store_true", help="what the amplifiers' gain and gbw change")
     derive.add_argument("--most", type=_count, metavar="N", help="expand an answer of up to N products")
     derive.add_argument("--real", action="store_true", help="count the amplifiers' gain and gbw")
     match = _verb(verbs, "match", "the design equations and part values for the target", MATCH)

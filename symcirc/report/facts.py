@@ -11,6 +11,7 @@ from sympy import Expr
 from symcirc.derivation import Answer, Derivation
 from symcirc.report.numbers import missing_numbers
 from symcirc.sheet.model import Sheet, Voltage
+from symcirc.stability.margins import margins_of
 from symcirc.transfer.arrange import form_of
 from symcirc.transfer.engineering import engineering
 from symcirc.transfer.evaluate import exact_coefficients
@@ -67,9 +68,31 @@ def facts_of(derivation: Derivation, answer: Answer) -> list[Fact]:
     facts += _frequencies(function, positive, numbers)
     unit = unit_of(answer)
     facts += [_gain(gain, numbers, unit) for gain in found.gains]
-    if numbers is not None and function.order > 2:
+    if numbers is not None and answer.ask.loop:
+        facts += _margin_facts(function, sheet)
+    elif numbers is not None and function.order > 2:
         facts += _pole_facts(numbers.poles)
     return facts
+
+
+def _margin_facts(function: TransferFunction, sheet: Sheet) -> list[Fact]:
+    """Return where a loop gain crosses 1 and -1, and by how much the closed loop is stable."""
+    found = margins_of(function, sheet.numbers)
+    facts = []
+    for unity in found.unity:
+        frequency = engineering(unity.omega / (2 * math.pi), "Hz")
+        margin = engineering(unity.margin_deg, "deg", 4)
+        facts.append(Fact("unity gain", None, f"at {frequency}, phase margin {margin}"))
+    if not found.unity:
+        facts.append(Fact("unity gain", None, "at no frequency"))
+    for phase in found.phase:
+        frequency = engineering(phase.omega / (2 * math.pi), "Hz")
+        margin = engineering(phase.margin_db, "dB", 4)
+        facts.append(Fact("gain margin", None, f"{margin} at {frequency}"))
+    if not found.phase:
+        facts.append(Fact("gain margin", None, "none is needed: the phase never reaches 180 degrees"))
+    stable = "stable" if found.stable else "unstable"
+    return [*facts, Fact("closed loop", None, f"{stable}, the other amplifiers as they are taken here")]
 
 
 def unit_of(answer: Answer) -> str:

@@ -217,7 +217,10 @@ def _divided(above: PolyElement, below: PolyElement) -> Quotient:
 
 
 def _row(terms: Sequence[Term], columns: Mapping[str, int], known: Mapping[str, Quotient]) -> Row:
-    """Return one equation's coefficients times what clears their fractions: that adds only bounded roots."""
+    """Return one equation's coefficients times what clears their fractions.
+
+    An amplifier's law becomes e V_out = V+ - V-; a polynomial in s alone adds only roots that stay where they are.
+    """
     weights = [_weight(term.weight, known) for term in terms]
     below = list(dict.fromkeys(weight.below for weight in weights if weight.below != 1))
     entries: Row = {}

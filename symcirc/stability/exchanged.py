@@ -3,10 +3,9 @@
 With every ideal amplifier as A = w_t/s the natural modes are the roots of the circuit's determinant. As w_t grows
 without bound some of them tend to those of the ideal stage and the others run to infinity: to the left where the
 feedback is negative on balance, to the right where it is positive. Exchanging the inputs of one amplifier turns the
-sign of its own w_t. Two amplifiers that are ideal and whose inputs are exchanged give the same ideal function, so
-nothing but these modes can tell (design of two-amplifier impedance converters: A. Antoniou, "Realisation of
+sign of its own w_t. The test is that of A. Antoniou for impedance converters of two amplifiers, "Realisation of
 gyrators using operational amplifiers, and their use in RC-active-network synthesis", Proc. IEE 116 (1969), from
-memory).
+memory: with the wrong pairing of the inputs they are unstable though ideally the same.
 """
 
 from __future__ import annotations
@@ -19,12 +18,14 @@ from itertools import combinations, product
 from symcirc.circuit.model import Circuit, CurrentDrive, LoopDrive, Setup, VoltageDrive
 from symcirc.complaints import Remark, listed
 from symcirc.sheet.model import GROUND, NodeCurrent, Sheet, Voltage
-from symcirc.stability.determinant import Block, Loop, amplifiers, known_quotients, loops, with_numbers
+from symcirc.stability.determinant import Block, amplifiers, known_quotients, loops, with_numbers
 from symcirc.stability.runaway import Runaway, runaway_roots
 from symcirc.stability.samples import part_values
 
 #: Sets of part values that are tried where the sheet leaves some open: the verdict must be the same for all.
 SAMPLES = 8
+#: Loops of more equations than this are no stage, and are not judged.
+LARGEST_LOOP = 64
 #: Sets of exchanged amplifiers that are thought of in one loop, the small ones first.
 MOST_SETS = 40
 
@@ -39,7 +40,7 @@ def exchanged_inputs(sheet: Sheet, circuit: Circuit, setups: Sequence[Setup]) ->
     It is judged at the sheet's numbers or, where it leaves some open, at several sets of ordinary values (general
     impedances as resistors) which must agree. An impedance is judged with its node open and with its node shorted,
     which must agree as well: a negative-impedance converter is stable in one of the two only, either way round. A
-    loop gain is judged with the loop closed.
+    loop gain is judged with the loop closed. Loops of more than 64 equations are passed over.
 
     Args:
         sheet: for its numbers and ties.
@@ -100,32 +101,38 @@ def _impedance_node(setup: Setup) -> str | None:
 
 def _under_one_drive(sheet: Sheet, circuit: Circuit, setup: Setup) -> Suspicions | None:
     """Return what is suspected for every set of values, or None where the circuit has no ideal solution."""
-    structure = loops(circuit, setup)
-    standing: Suspicions = {frozenset(loop.laws): _choices(loop) for loop in structure}
+    structure = [loop for loop in loops(circuit, setup) if len(loop.equations) <= LARGEST_LOOP]
+    standing: Suspicions | None = None
     for values in part_values(sheet, SAMPLES):
         known = known_quotients(sheet.ties, values)
-        found: Suspicions = {}
-        for block in (with_numbers(loop, known) for loop in structure):
-            names = frozenset(block.laws)
-            modes = runaway_roots(block.determinant())
-            if modes is None:
-                return None
-            if modes.any and names in standing:
-                mends = _mends(block, modes, standing[names])
-                found |= {names: mends} if mends or modes.real else {}
+        found = _suspected([with_numbers(loop, known) for loop in structure], standing)
+        if not found:
+            return found
         standing = found
-        if not standing:
-            break
     return standing
 
 
-def _choices(loop: Loop) -> set[Names]:
+def _suspected(blocks: Sequence[Block], standing: Suspicions | None) -> Suspicions | None:
+    """Return what is suspected for one set of values and, if others came before it, for all of them."""
+    found: Suspicions = {}
+    for block in blocks:
+        names = frozenset(block.laws)
+        modes = runaway_roots(block.determinant())
+        if modes is None:
+            return None
+        if modes.any and (standing is None or names in standing):
+            mends = _mends(block, modes, _choices(block) if standing is None else standing[names])
+            found |= {names: mends} if mends or modes.real else {}
+    return found
+
+
+def _choices(block: Block) -> set[Names]:
     """Return the sets of amplifiers that may be thought to be exchanged."""
     sets: set[Names] = set()
-    for size in range(1, len(loop.laws) + 1):
-        if sets and len(sets) + math.comb(len(loop.laws), size) > MOST_SETS:
+    for size in range(1, len(block.laws) + 1):
+        if sets and len(sets) + math.comb(len(block.laws), size) > MOST_SETS:
             break
-        sets |= {frozenset(names) for names in combinations(loop.laws, size)}
+        sets |= {frozenset(names) for names in combinations(block.laws, size)}
     return sets
 
 

@@ -86,7 +86,7 @@ def margins(numerator: Sequence[Fraction | int], denominator: Sequence[Fraction 
 
     Args:
         numerator, denominator: coefficients by ascending power of s, exact; a ``Fraction`` made from a float is
-            exact for what the float is. The last of each is not zero.
+            exact for what the float is. Zeros at the end are left out.
 
     Raises:
         ValueError: T is zero, or its denominator is.
@@ -108,7 +108,7 @@ def margins_of(function: TransferFunction, numbers: Mapping[str, sympy.Expr]) ->
     """Return the margins of a derived loop gain for a sheet's numbers.
 
     Raises:
-        KeyError: a symbol of the function has no number (:func:`~symcirc.stability.numbers.missing_numbers`).
+        KeyError: a symbol of the function has no number.
         ValueError: the loop gain is zero.
     """
     return margins(values_in(function.numerator, numbers), values_in(function.denominator, numbers))

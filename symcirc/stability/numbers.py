@@ -1,33 +1,28 @@
-"""The numbers of a sheet as exact fractions, and a transfer function's coefficients for them."""
+"""The numbers of a sheet as exact fractions, and the values of polynomials for them."""
 
 from __future__ import annotations
 
 import math
 from collections.abc import Mapping, Sequence
 from fractions import Fraction
+from typing import Any
 
-import mpmath
 import sympy
 from sympy.polys.domains import QQ
 from sympy.polys.rings import PolyElement
-
-from symcirc.transfer.function import TransferFunction
 
 #: Decimal digits to which pi and roots are taken.
 DIGITS = 60
 
 
-def decimal(number: object) -> Fraction:
-    """Return a number of mpmath, or an irrational one of sympy, as a fraction that is right to 60 digits.
+def decimal(number: sympy.Expr) -> Fraction:
+    """Return a real number as a fraction that is right to 60 digits.
 
-    >>> decimal(sympy.sqrt(2)) ** 2 - 2 < Fraction(1, 10**58)
+    >>> abs(decimal(sympy.sqrt(2)) ** 2 - 2) < Fraction(1, 10**58)
     True
     """
-    with mpmath.workdps(DIGITS + 5):
-        value = mpmath.mpmathify(number.evalf(DIGITS + 5) if isinstance(number, sympy.Expr) else number)
-        mantissa, exponent = mpmath.frexp(value)
-        scaled = int(mpmath.ldexp(mantissa, mpmath.mp.prec))
-        return Fraction(scaled) * Fraction(2) ** int(exponent - mpmath.mp.prec)
+    digits = sympy.Rational(str(sympy.N(number, DIGITS)))
+    return Fraction(int(digits.p), int(digits.q))
 
 
 #: The one value of pi here: where pi cancels in a formula, this fraction cancels as well.
@@ -62,14 +57,6 @@ def root_of(number: Fraction) -> Fraction:
     return decimal(sympy.sqrt(sympy.Rational(number.numerator, number.denominator)))
 
 
-def missing_numbers(function: TransferFunction, numbers: Mapping[str, sympy.Expr]) -> list[str]:
-    """Return the symbols that stand in a function's ring and have no number, ``pi`` aside."""
-    gens = [str(symbol) for symbol in function.ring.symbols]
-    polynomials = (*function.numerator, *function.denominator)
-    held = {gens[k] for p in polynomials for monomial in p for k, e in enumerate(monomial) if e}
-    return [name for name in gens if name in held and name != "pi" and name not in numbers]
-
-
 def values_in(polynomials: Sequence[PolyElement], numbers: Mapping[str, sympy.Expr]) -> tuple[Fraction, ...]:
     """Return the values of polynomials of one ring for a sheet's numbers.
 
@@ -92,7 +79,7 @@ def values_in(polynomials: Sequence[PolyElement], numbers: Mapping[str, sympy.Ex
             known[name] = as_fraction(numbers[name])
         return known[name]
 
-    def product(polynomial: PolyElement, monomial: tuple[int, ...], factor: object) -> Fraction:
+    def product(polynomial: PolyElement, monomial: tuple[int, ...], factor: Any) -> Fraction:
         names = polynomial.ring.symbols
         powers = (value(str(names[k])) ** e for k, e in enumerate(monomial) if e)
         return math.prod(powers, start=_constant(polynomial, factor))
@@ -103,8 +90,8 @@ def values_in(polynomials: Sequence[PolyElement], numbers: Mapping[str, sympy.Ex
     )
 
 
-def _constant(polynomial: PolyElement, factor: object) -> Fraction:
+def _constant(polynomial: PolyElement, factor: Any) -> Fraction:
     domain = polynomial.ring.domain
     if domain == QQ:
-        return Fraction(int(factor.numerator), int(factor.denominator))  # type: ignore[attr-defined]
+        return Fraction(int(factor.numerator), int(factor.denominator))
     return as_fraction(sympy.expand(domain.to_sympy(factor)))

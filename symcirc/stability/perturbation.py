@@ -12,6 +12,7 @@ from symcirc.circuit.amplifier import gain_symbol
 from symcirc.circuit.model import LoopDrive
 from symcirc.complaints import Complaint
 from symcirc.derivation import Derivation
+from symcirc.sheet.expression import Expression, names
 from symcirc.sheet.model import Device
 from symcirc.transfer.build import build_function
 from symcirc.transfer.function import symbols_in
@@ -82,6 +83,22 @@ def perturbation(ideal: Derivation, real: Derivation, name: str) -> Perturbation
 def real_amplifiers(ideal: Derivation) -> list[Device]:
     """Return the amplifiers that have a gain or a gbw."""
     return [device for device in ideal.circuit.devices if device.kind == "opamp" and device.parameters]
+
+
+def needed_ties(symbol: str, ties: Mapping[str, Expression]) -> dict[str, Expression]:
+    """Return the ties on which a symbol depends, its own included.
+
+    >>> needed_ties("U1_A", {})
+    {}
+    """
+    needed: dict[str, Expression] = {}
+    waiting = [symbol]
+    while waiting:
+        name = waiting.pop()
+        if name in ties and name not in needed:
+            needed[name] = ties[name]
+            waiting += [inner.text for inner in names(ties[name])]
+    return needed
 
 
 def _joint_ring(one: PolyRing, other: PolyRing, gains: set[str]) -> PolyRing:

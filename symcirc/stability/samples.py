@@ -20,13 +20,15 @@ ORDINARY = {
     "ratio": (-1, 1),
     None: (-1, 1),
 }
-#: Draws after which it is given up to find values for which every part is positive.
+#: Draws after which it is given up to find values that all parts can have.
 MOST_DRAWS = 200
+#: The value of s at which ties are tried; R, C and L do not depend on it.
+SOMEWHERE = Fraction(355, 113)
 EXACT = Arithmetic(lambda number: number, PI, root_of)
 
 
 def part_values(sheet: Sheet, count: int) -> Iterator[dict[str, Fraction]]:
-    """Yield sets of values for every name of a sheet that is not tied, such that every part is positive.
+    """Yield sets of values for every name of a sheet that is not tied, such that every part can have its value.
 
     The sheet's numbers are kept. Where they are all there, one set is all; else up to ``count`` of them, seeded.
 
@@ -42,7 +44,7 @@ def part_values(sheet: Sheet, count: int) -> Iterator[dict[str, Fraction]]:
     for _ in range(count if open_symbols else 1):
         for _ in range(MOST_DRAWS):
             values = fixed | {s.name: _ordinary(s, generator) for s in open_symbols}
-            if _all_positive(sheet, values):
+            if _can_be(sheet, values):
                 yield values
                 break
 
@@ -53,9 +55,12 @@ def _ordinary(symbol: Symbol, generator: random.Random) -> Fraction:
     return generator.randrange(10, 100) * Fraction(10) ** (generator.randrange(low, high) - 1)
 
 
-def _all_positive(sheet: Sheet, values: Mapping[str, Fraction]) -> bool:
+def _can_be(sheet: Sheet, values: Mapping[str, Fraction]) -> bool:
+    """Tell whether all ties have a value, R, C and L are positive and no general impedance is zero."""
     try:
-        known = complete(values, sheet.ties, Fraction(1), EXACT)
+        known = complete(values, sheet.ties, SOMEWHERE, EXACT)
     except ZeroDivisionError:
         return False
-    return all(known[part.name] > 0 for part in sheet.parts if part.kind in ("R", "C", "L"))
+    return all(
+        known[part.name] > 0 if part.kind in ("R", "C", "L") else known[part.name] for part in sheet.parts
+    )

@@ -9,7 +9,6 @@ amplifiers", IEEE Trans. Circuit Theory 19 (1972), from memory, exact in the fir
 
 from __future__ import annotations
 
-from collections.abc import Mapping
 from dataclasses import dataclass
 
 import sympy
@@ -18,9 +17,10 @@ from sympy.polys.rings import PolyElement
 
 from symcirc.complaints import Complaint
 from symcirc.derivation import Derivation
-from symcirc.sheet.expression import Expression, names
+from symcirc.sheet.expression import names
 from symcirc.sheet.model import Device
-from symcirc.stability.perturbation import Coefficients, perturbation, real_amplifiers
+from symcirc.stability.perturbation import Coefficients, needed_ties, perturbation, real_amplifiers
+from symcirc.stability.residue import Residue, norm, over, residue
 from symcirc.transfer.common import remove_common_factor
 
 
@@ -65,27 +65,24 @@ def first_order_shifts(ideal: Derivation, real: Derivation, name: str) -> tuple[
     >>> first_order_shifts(derive(pose(sheet)), derive(pose_real(sheet)), "H")[0].omega0
     -1/(4*pi*C1*R1*U1_gbw)
     """
-    ask = ideal.answer(name).ask
-    order = ideal.answer(name).function.order
-    if order != 2 or not ideal.answer(name).function.denominator[0]:
+    found = perturbation(ideal, real, name)
+    ask, modulus = ideal.answer(name).ask, found.ideal
+    if len(modulus) != 3 or not modulus[0]:
+        order = f"order {len(modulus) - 1}" + ("" if modulus[0] else " with a pole at 0")
         raise Complaint(
             ask.place,
-            f"`{name}` has order {order}"
-            + (" with a pole at 0" if order == 2 else "")
-            + ": no omega0 and Q to shift",
+            f"`{name}` has {order}: there is no omega0 and no Q to shift",
             "ask for a function of order 2, or fix all values for the shift of each pole",
         )
-    found = perturbation(ideal, real, name)
-    modulus = found.ideal
-    hidden = _residue(found.hidden, modulus)
-    if not _norm(hidden, modulus):
+    hidden = residue(found.hidden, modulus)
+    if not norm(hidden, modulus):
         raise Complaint(
             ask.place,
             f"`{name}` hides a natural mode that coincides with one of its own poles: they do not move in proportion",
             "fix all values, and the exact shift of each pole is given",
         )
     return tuple(
-        _shift(device, parameter, _over(_residue(change, modulus), hidden, modulus), modulus)
+        _shift(device, parameter, over(residue(change, modulus), hidden, modulus), modulus)
         for device in real_amplifiers(ideal)
         if device.name in found.first
         for parameter, change in _changes(ideal, device, found.first[device.name])
@@ -97,7 +94,8 @@ def _changes(ideal: Derivation, device: Device, change: Coefficients) -> list[tu
     found = []
     if "gain" in device.parameters:
         gain = device.parameters["gain"]
-        if _depends_on_s(gain, ideal.ties):
+        ties = needed_ties(gain, ideal.ties)
+        if any(name.text == "s" for tie in ties.values() for name in names(tie)):
             raise Complaint(
                 device.place,
                 f"the gain of `{device.label}` depends on s, so there is no one number to expand in",
@@ -107,16 +105,6 @@ def _changes(ideal: Derivation, device: Device, change: Coefficients) -> list[tu
     if "gbw" in device.parameters:
         found.append((device.parameters["gbw"], (change[0].ring.zero, *change)))
     return found
-
-
-def _depends_on_s(name: str, ties: Mapping[str, Expression]) -> bool:
-    waiting = [name]
-    while waiting:
-        held = waiting.pop()
-        if held == "s":
-            return True
-        waiting += [n.text for n in names(ties[held])] if held in ties else []
-    return False
 
 
 def _shift(device: Device, parameter: str, change: Residue, modulus: Coefficients) -> FirstOrder:
@@ -135,60 +123,8 @@ def _shift(device: Device, parameter: str, change: Residue, modulus: Coefficient
 def _quotient(above: PolyElement, below: PolyElement) -> sympy.Expr:
     """Return a quotient in lowest terms; over the rationals with whole coefficients."""
     above, below, _ = remove_common_factor(above, below)
-    scale = below.content() if below.ring.domain == QQ else below.LC
-    scale = -scale if below.ring.domain == QQ and below.LC < 0 else scale
-    return above.quo_ground(scale).as_expr() / below.quo_ground(scale).as_expr()
-
-
-# polynomials modulo a2 s^2 + a1 s + a0 ---------------------------------------------------------------------------
-
-
-@dataclass(frozen=True)
-class Residue:
-    """``(constant + linear s) / below``."""
-
-    constant: PolyElement
-    linear: PolyElement
-    below: PolyElement
-
-
-def _residue(polynomial: Coefficients, modulus: Coefficients) -> Residue:
-    """Return what a polynomial in s leaves, by Horner's rule."""
-    zero = modulus[0].ring.zero
-    rest = Residue(zero, zero, zero + 1)
-    for coefficient in reversed(polynomial):
-        rest = _times_s(rest, modulus)
-        rest = Residue(rest.constant + coefficient * rest.below, rest.linear, rest.below)
-    return rest
-
-
-def _times_s(rest: Residue, modulus: Coefficients) -> Residue:
-    if not rest.linear:
-        return Residue(rest.linear, rest.constant, rest.below)
-    a0, a1, a2 = modulus
-    return Residue(-a0 * rest.linear, a2 * rest.constant - a1 * rest.linear, a2 * rest.below)
-
-
-def _norm(rest: Residue, modulus: Coefficients) -> PolyElement:
-    """Return what is zero just where a residue has a root in common with the modulus."""
-    a0, a1, a2 = modulus
-    c, d = rest.constant, rest.linear
-    return a2 * c**2 - a1 * c * d + a0 * d**2 if d else c
-
-
-def _over(rest: Residue, divisor: Residue, modulus: Coefficients) -> Residue:
-    """Return a quotient, by the conjugate: (c + d s)(a2 c - a1 d - a2 d s) = the norm."""
-    _, a1, a2 = modulus
-    c, d = divisor.constant, divisor.linear
-    conjugate = (a2 * c - a1 * d, -a2 * d) if d else (c.ring.one, c.ring.zero)
-    product = (
-        rest.constant * conjugate[0],
-        rest.constant * conjugate[1] + rest.linear * conjugate[0],
-        rest.linear * conjugate[1],
-    )
-    reduced = _residue(product, modulus)
-    return Residue(
-        reduced.constant * divisor.below,
-        reduced.linear * divisor.below,
-        reduced.below * rest.below * _norm(divisor, modulus),
-    )
+    scale = below.LC
+    if below.ring.domain == QQ:
+        scale = below.content() if below.LC > 0 else -below.content()
+    symbols = [sympy.pi if str(symbol) == "pi" else symbol for symbol in below.ring.symbols]
+    return above.quo_ground(scale).as_expr(*symbols) / below.quo_ground(scale).as_expr(*symbols)
