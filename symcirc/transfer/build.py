@@ -62,7 +62,8 @@ def _canonical(above: PolyElement, below: PolyElement) -> tuple[PolyElement, Pol
         above, below = above.mul_ground(1 / scale), below.mul_ground(1 / scale)
         negative = below.LC < 0
     else:
-        above, below = above.mul_ground(1 / below.LC), below.mul_ground(1 / below.LC)
+        scale = ring.domain.one / below.LC
+        above, below = above.mul_ground(scale), below.mul_ground(scale)
         negative = False
     return (-above, -below) if negative else (above, below)
 
