@@ -157,18 +157,30 @@ def solved_diagram(posed: Posed, setup: Setup) -> Diagram:
     Raises Complaint where the equations have no unique solution, or what stands under the line is always zero.
     """
     diagram = determinants(posed.circuit, setup)
-    if collected(diagram).roots[1]:
-        return diagram
     drive = setup.drive
-    if isinstance(drive, VoltageDrive):
-        own = Voltage(drive.plus, drive.minus, setup.place)
-        if collected(determinants(posed.circuit, replace(setup, under=own))).roots[1]:
+    own = (
+        Voltage(drive.plus, drive.minus, setup.under.place)
+        if isinstance(drive, VoltageDrive)
+        else setup.under
+    )
+    if setup.under != own:  # two ratios over one determinant, which must not be zero itself
+        _require_solution(
+            posed, replace(setup, under=own), determinants(posed.circuit, replace(setup, under=own))
+        )
+        if not collected(diagram).roots[1]:
             raise Complaint(
                 setup.under.place,
                 f"what stands under the line of `{setup.ask}` is zero, whatever the drive is",
                 "put a voltage or a current under the line that the drive moves",
             )
-    raise explain_singular(posed.circuit, setup)
+        return diagram
+    _require_solution(posed, setup, diagram)
+    return diagram
+
+
+def _require_solution(posed: Posed, setup: Setup, diagram: Diagram) -> None:
+    if not collected(diagram).roots[1]:
+        raise explain_singular(posed.circuit, setup)
 
 
 def _big_answer(posed: Posed, ask: Ask, setup: Setup, diagram: Diagram) -> BigAnswer:

@@ -81,12 +81,45 @@ def test_ties_are_the_first_named_expressions_of_a_big_answer(derived):
     assert named["definitions"][:2] == [["R1", "2*R0"], ["R2", "R0 + R1"]]
 
 
-def test_a_big_answer_with_a_tie_that_holds_s_is_refused_with_the_number_to_ask_for(derived):
-    text = "in -- Z1 -- n0\n" + ladder(5).replace("V_n0", "V_in") + "fix Z1 = R9 + 1/(s*C9)\n"
-    called = derived(text, "--most", "20")
-    assert called.status == 2
-    assert "--most" in called.err
-    assert derived(text, "--json").status == 0
+def value_in_s(answer, side, known, s):
+    names = {**known, "s": s}
+    for name, expression in answer["definitions"]:
+        names[name] = value(expression, names)
+    return value(answer[side], names)
+
+
+@pytest.mark.parametrize(
+    ("text", "options"),
+    [
+        ("in -- Z1 -- n0\n" + ladder(3).replace("V_n0", "V_in") + "fix Z1 = R9 + 1/(s*C9)\n", []),
+        (
+            ladder(3) + "U1 opamp: plus n3, minus m, drives m, gbw G, gain A\nm -- R9 -- gnd\nchoose G, A\n"
+            "ask K = V_m/V_n0\n",
+            ["--real", "--ask", "K"],
+        ),
+        (
+            ladder(3)
+            + "U1 opamp: plus n3, minus m, drives o, gbw G\nm -- R8 -- o -- R9 -- n0\nm -- C9 -- gnd\n"
+            "choose G\nask T = loop(U1) with V_n0 = 0\n",
+            ["--ask", "T"],
+        ),
+    ],
+    ids=["general impedance", "real amplifier", "loop gain"],
+)
+def test_an_answer_whose_ties_hold_s_is_named_with_s_inside(derived, text, options):
+    named = derived(text, "--json", "--most", "1", *options).json["ask"]
+    plain = derived(text, "--json", *options).json["ask"]
+    ((name, answer),) = named.items()
+    known = {str(k): sympy.Rational(3 * i + 2, 7) for i, k in enumerate(["R0", "R1", "R2", "C0", "C1", "C2"])}
+    known |= {k: sympy.Rational(2 * i + 3, 5) for i, k in enumerate(["R8", "R9", "C9", "G", "A"])}
+    s = sympy.Rational(5, 3)
+    over, under = (value_in_s(answer, f"{side}_in_s", known, s) for side in ("numerator", "denominator"))
+    sides = (
+        sum(value(c, known) * s**k for k, c in enumerate(plain[name][side]))
+        for side in ("numerator", "denominator")
+    )
+    expected = next(sides) / next(sides)
+    assert abs(sympy.N(over / under / expected - 1, 30)) < 1e-25
 
 
 def test_people_get_the_names_and_scripts_the_expanded_answer(derived):

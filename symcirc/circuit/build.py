@@ -86,9 +86,18 @@ def build_setup(circuit: Circuit, asks: tuple[Ask, ...], ask: Ask) -> Setup:
         pair = None if other.loop else _driven_pair(_drive(circuit, other))
         if pair is None or (isinstance(_drive(circuit, other), CurrentDrive)):
             continue
-        if set(pair) != set(live) and pair[0] not in opened and pair not in pairs:
+        if not opened & set(pair) and all(set(pair) != set(known) for known in (live, *pairs)):
             pairs.append(pair)
-    return Setup(ask.name, drive, tuple(pairs), *_over_and_under(circuit, ask), ask.place)
+    over, under = _over_and_under(circuit, ask)
+    delivering = {*live, *(node for pair in pairs for node in pair)}
+    for quantity in (over, under):
+        if isinstance(quantity, NodeCurrent) and quantity.node not in delivering:
+            raise Complaint(
+                quantity.place,
+                f"nothing delivers a current into node `{quantity.node}`: it is neither driven nor shorted",
+                f"drive it, or short it: with V_{quantity.node} = 0",
+            )
+    return Setup(ask.name, drive, tuple(pairs), over, under, ask.place)
 
 
 def _drive(circuit: Circuit, ask: Ask) -> Drive:

@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import itertools
 from collections import defaultdict
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 
 import networkx as nx
 
 from symcirc.circuit.build import branch
-from symcirc.circuit.model import Circuit, CurrentDrive, Setup, VoltageDrive
+from symcirc.circuit.model import Circuit, CurrentDrive, LoopDrive, Setup, VoltageDrive
 from symcirc.complaints import Complaint, Place, Remark, listed
 from symcirc.sheet.model import GROUND, Ask, Device, Voltage
 
@@ -21,15 +21,11 @@ INPUTS = {
     "vccs": ("senses",),
     "conveyor": ("y",),
 }
-#: The branches of a device whose voltage is set by a law of its own.
-VOLTAGE_BRANCHES = {
-    "opamp": ("drives",),
-    "amplifier": ("drives",),
-    "vcvs": ("drives",),
-    "cccs": ("senses",),
-    "ccvs": ("senses", "drives"),
-    "conveyor": ("x",),
-}
+#: The branches of a device whose current nothing but the rest of the circuit determines.
+FREE_CURRENTS = {"opamp": ("drives",), "amplifier": ("drives",), "vcvs": ("drives",), "ccvs": ("drives",)}
+#: The branches of a device that have a given voltage, zero volts.
+GIVEN_VOLTAGES = {"cccs": ("senses",), "ccvs": ("senses",)}
+Branches = Mapping[str, tuple[str, ...]]
 
 
 def refuse_structure(circuit: Circuit, asks: tuple[Ask, ...], setups: tuple[Setup, ...]) -> None:
@@ -94,6 +90,7 @@ def _refuse_hanging(
         for quantity in (ask.over, ask.under):
             if isinstance(quantity, Voltage):
                 free |= {quantity.plus, quantity.minus}
+        free |= {dead.node for dead in ask.dead}
     for setup in setups:
         free |= set(_driven_nodes(setup))
     for node, place in circuit.node_places.items():
@@ -117,8 +114,8 @@ def _refuse_drive_on_output(circuit: Circuit, setup: Setup) -> None:
     if not isinstance(setup.drive, VoltageDrive) or setup.drive.minus != GROUND:
         return
     for device in circuit.devices:
-        for role in VOLTAGE_BRANCHES.get(device.kind, ()):
-            nodes = branch(device, role)
+        roles = FREE_CURRENTS.get(device.kind, ()) + GIVEN_VOLTAGES.get(device.kind, ())
+        for nodes in (branch(device, role) for role in roles):
             if setup.drive.plus in nodes and GROUND in nodes:
                 raise Complaint(
                     setup.under.place if isinstance(setup.under, Voltage) else setup.place,
@@ -141,6 +138,8 @@ def _refuse_islands(circuit: Circuit, setup: Setup, terminals: dict[str, list[tu
         if node in grounded:
             continue
         label = _label(circuit, node)
+        if not terminals[node]:
+            raise Complaint(place, f"nothing stands on node `{label}`", "join it to a part, or leave it out")
         if all(role == "input" for _, role in terminals[node]):
             inputs = listed(sorted({name for name, _ in terminals[node]}))
             raise Complaint(
@@ -164,30 +163,43 @@ def explain_singular(circuit: Circuit, setup: Setup) -> Complaint:
 
 
 def _fight(circuit: Circuit, setup: Setup) -> Complaint | None:
-    """A loop of branches whose voltages are all set: the sources fight, or their currents are undetermined."""
+    """A loop of sources: round free currents one more can flow, and round given voltages these must cancel.
+
+    An amplifier's output and a driven voltage are only of the first sort, a sensed branch of zero volts is only of the
+    second, a drive and a short are of both.
+    """
+    return _loop(circuit, setup, FREE_CURRENTS) or _loop(circuit, setup, GIVEN_VOLTAGES)
+
+
+def _loop(circuit: Circuit, setup: Setup, branches: Branches) -> Complaint | None:
     joined: nx.Graph = nx.Graph()
     joined.add_nodes_from(circuit.graph)
-    for name, place, (plus, minus) in _set_voltages(circuit, setup):
+    for name, place, (plus, minus) in _sources(circuit, setup, branches):
         if plus == minus or nx.has_path(joined, plus, minus):
             path = [] if plus == minus else nx.shortest_path(joined, plus, minus)
             others = sorted({joined.edges[a, b]["name"] for a, b in itertools.pairwise(path)})
             return Complaint(
                 place,
-                f"{listed([name, *others])} form a loop of ideal voltage sources: they fight",
+                f"{listed(dict.fromkeys([name, *others]))} form a loop of ideal voltage sources: they fight",
                 "drive each node by one source only, or put a part between them",
             )
         joined.add_edge(plus, minus, name=name)
     return None
 
 
-def _set_voltages(circuit: Circuit, setup: Setup) -> Iterator[tuple[str, Place, tuple[str, str]]]:
+def _sources(
+    circuit: Circuit, setup: Setup, branches: Branches
+) -> Iterator[tuple[str, Place, tuple[str, str]]]:
     drive = setup.drive
-    if isinstance(drive, VoltageDrive):
-        yield f"the drive of `{setup.ask}`", setup.place, (drive.plus, drive.minus)
+    if not isinstance(drive, CurrentDrive):
+        pair = (drive.plus, drive.minus) if isinstance(drive, VoltageDrive) else (drive.node, GROUND)
+        yield f"the drive of `{setup.ask}`", setup.place, pair
     for pair in setup.shorts:
         yield f"the dead drive at `{_label(circuit, pair[0])}`", setup.place, pair
     for device in circuit.devices:
-        for role in VOLTAGE_BRANCHES.get(device.kind, ()):
+        if isinstance(drive, LoopDrive) and device.name == drive.amplifier:
+            continue
+        for role in branches.get(device.kind, ()):
             yield f"`{device.label}`", device.place, branch(device, role)
 
 
@@ -195,7 +207,7 @@ def _no_feedback(circuit: Circuit, setup: Setup) -> Complaint | None:
     """An amplifier from whose output no path leads to its own inputs: nothing determines its output."""
     reach = _influence(circuit, setup)
     for device in circuit.devices:
-        if device.kind != "opamp":
+        if device.kind != "opamp" or setup.drive == LoopDrive(device.name, device.terminals["drives"][0]):
             continue
         output = device.terminals["drives"][0]
         reached = nx.descendants(reach, ("out", device.name)) if ("out", device.name) in reach else set()

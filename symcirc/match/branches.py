@@ -9,7 +9,8 @@ from sympy.polys.rings import PolyElement
 
 from symcirc.match.candidates import Candidate
 from symcirc.match.claims import Claim, simplified
-from symcirc.match.forms import Form
+from symcirc.match.elimination import substituted
+from symcirc.match.forms import Form, discriminant
 from symcirc.match.quadratics import Quadratic
 from symcirc.match.quantities import Quantities, by_powers, common_monomial, divided_by_monomial, holds
 from symcirc.match.system import Quotient
@@ -73,7 +74,7 @@ class _Collected:
 
     def _add_quadratic(self, root: Quadratic, needs_sign: bool) -> None:
         if root.side and root.form.coefficients[1]:
-            self.claims.append(self._in_chosen(Claim((root.discriminant,), strict=False)))
+            self.claims.append(self._in_chosen(Claim((discriminant(root.form),), strict=False)))
         if needs_sign:
             found = root.root_claims(self._known(), self.quantities)
             self.claims += [self._in_chosen(claim) for claim in found or ()]
@@ -123,11 +124,7 @@ class _Collected:
         rest, below = form.coefficients
         if not degree or len(polynomial) > MOST_TERMS:
             return [polynomial]
-        total = self.quantities.ring.zero
-        for power, coefficient in enumerate(powers):
-            factor = (-rest) ** power * below ** (degree - power)
-            self.work.spend(len(coefficient) * len(factor))
-            total += coefficient * factor
+        total = substituted(powers, -rest, below, self.work)
         total = self._without_monomial(self.quantities.reduced(total))
         return [total] if degree % 2 == 0 else [total, below]
 

@@ -6,13 +6,11 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from typing import Any
 
-from sympy.polys.rings import PolyElement
-
 from symcirc.match.chains import Chain
 from symcirc.match.decimals import reals
-from symcirc.match.forms import Form, form_of
+from symcirc.match.forms import Form, discriminant, form_of
 from symcirc.match.problem import Refusal
-from symcirc.match.quantities import Quantities, value_at
+from symcirc.match.quantities import Quantities, known_value
 from symcirc.match.roots import positive_roots, real_roots
 
 
@@ -40,13 +38,6 @@ class Candidate:
     choices: tuple[int, ...]
     values: tuple[Any, ...]
     fails: bool
-
-
-def known_value(polynomial: PolyElement, values: Sequence[Any]) -> Any:
-    """Return the value of a polynomial; None where it holds a quantity without a value."""
-    if any(e and values[k] is None for monomial in polynomial for k, e in enumerate(monomial)):
-        return None
-    return value_at(polynomial, [reals.mpf(0) if v is None else v for v in values])
 
 
 def candidates(chain: Chain, quantities: Quantities) -> list[Candidate]:
@@ -83,9 +74,7 @@ def _roots(form: Form, values: Sequence[Any], quantities: Quantities) -> list[tu
     coefficients = [known_value(c, values) for c in form.coefficients]
     signless = form.unknown in quantities.signless
     if None in coefficients:
-        square = form.degree == 2 and not form.coefficients[1] and not signless
-        sides = (1,) if square else (1, -1)
-        return [(side, None) for side in sides] if form.degree == 2 else [(0, None)]
+        return [(side, None) for side in _sides(form, quantities)]
     if form.degree == 1:
         if not coefficients[1]:
             raise Degenerate
@@ -94,6 +83,13 @@ def _roots(form: Form, values: Sequence[Any], quantities: Quantities) -> list[tu
         return [(c, _power_root(v, form.power)) for c, v in _quadratic_roots(coefficients, signless)]
     found = (real_roots if signless else positive_roots)(coefficients)
     return [(k, _power_root(root, form.power)) for k, root in enumerate(found, 1)] or [(0, reals.nan)]
+
+
+def _sides(form: Form, quantities: Quantities) -> tuple[int, ...]:
+    """Return the choices at a step whose value is open."""
+    if form.degree != 2 or not quantities.reduced(discriminant(form)):
+        return (0,)
+    return (1, -1) if form.coefficients[1] or form.unknown in quantities.signless else (1,)
 
 
 def _quadratic_roots(coefficients: Sequence[Any], signless: bool) -> list[tuple[int, Any]]:

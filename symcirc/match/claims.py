@@ -13,7 +13,7 @@ from typing import Any
 from sympy.polys.rings import PolyElement
 
 from symcirc.match.decimals import reals
-from symcirc.match.quantities import Monomial, Quantities, total, value_at
+from symcirc.match.quantities import Monomial, Quantities, known_value, total
 
 #: Polynomials with more terms are not factored.
 MOST_FACTORED_TERMS = 120
@@ -26,14 +26,13 @@ class Claim:
     factors: tuple[PolyElement, ...]
     strict: bool = True
 
-    def value(self, values: Sequence[Any]) -> Any:
-        """Return the product at a point; the claim holds where it is positive, or zero and not strict."""
-        return reals.fprod(value_at(f, values) for f in self.factors)
-
-    def is_met(self, values: Sequence[Any]) -> bool:
-        """Tell whether the claim holds at a point."""
-        value = self.value(values)
-        return bool(value > 0 or (value == 0 and not self.strict))
+    def is_missed(self, values: Sequence[Any]) -> bool:
+        """Tell whether the claim is wrong at a point, of which some values may be None: then it may be right."""
+        found = [known_value(factor, values) for factor in self.factors]
+        if None in found:
+            return False
+        product = reals.fprod(found)
+        return bool(product < 0 or (product == 0 and self.strict))
 
 
 def simplified(claims: Iterable[Claim], quantities: Quantities) -> list[Claim] | None:

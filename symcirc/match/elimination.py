@@ -7,10 +7,12 @@ Source, from memory: W. S. Brown, "The subresultant PRS algorithm" (1978).
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from sympy.polys.rings import PolyElement
 
 from symcirc.match.quantities import Quantities, by_powers
-from symcirc.match.work import Work
+from symcirc.match.work import STEP_BOUND, Work
 
 
 def put_in(
@@ -28,20 +30,30 @@ def put_in(
     if len(powers) == 1:
         return equation
     rest, below = by_powers(linear, unknown)
-    above, degree = -rest, len(powers) - 1
-    total = quantities.ring.zero
-    for power, coefficient in enumerate(powers):
-        if coefficient:
-            factor = above**power * below ** (degree - power)
-            work.spend(len(coefficient) * len(factor))
-            total += coefficient * factor
+    total = substituted(powers, -rest, below, work)
     return without_factor(quantities.cleaned(total), below, quantities)
 
 
+def substituted(
+    powers: Sequence[PolyElement], above: PolyElement, below: PolyElement, work: Work
+) -> PolyElement:
+    """Return a polynomial's value at ``above/below`` times ``below`` to its degree (Horner's scheme).
+
+    ``powers`` are its coefficients, ascending. Raises StepTooLarge where a product is too long.
+    """
+    total, scale = powers[-1], powers[-1].ring.one
+    for coefficient in reversed(powers[:-1]):
+        work.spend(len(total) * len(above) + len(scale) * len(below))
+        scale = scale * below
+        work.spend(len(coefficient) * len(scale))
+        total = total * above + coefficient * scale
+    return total
+
+
 def without_factor(equation: PolyElement, factor: PolyElement, quantities: Quantities) -> PolyElement:
-    """Return an equation without a factor that is known not to be zero."""
+    """Return an equation without a factor that is known not to be zero, but for very long equations."""
     factor = quantities.cleaned(factor)
-    if factor.is_ground or not equation:
+    if factor.is_ground or not equation or len(equation) * len(factor) > STEP_BOUND:
         return equation
     while len(equation) >= len(factor):
         quotient, rest = equation.div(factor)

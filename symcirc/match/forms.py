@@ -52,6 +52,12 @@ def form_of(step: Step, quantities: Quantities) -> Form:
     return Form(step, power, tuple(coefficients[::power]))
 
 
+def discriminant(form: Form) -> PolyElement:
+    """Return b² - 4ac of a form of degree 2."""
+    c, b, a = form.coefficients
+    return b**2 - 4 * a * c
+
+
 def deflated(polynomial: PolyElement, form: Form) -> PolyElement | None:
     """Return a polynomial with x in place of x**power; None where it holds other powers of x.
 

@@ -95,7 +95,7 @@ def condition_latex(condition: Condition) -> str:
     >>> print(condition_latex(Condition(sympy.Symbol("C1"), ">=", 2 * sympy.Symbol("C2"))))
     C_{1} \ge 2 C_{2}
     """
-    relation = {">=": r"\ge", "<=": r"\le", "!=": r"\ne"}.get(condition.relation, condition.relation)
+    relation = {">=": r"\ge", "<=": r"\le"}.get(condition.relation, condition.relation)
     return f"{equation_latex(condition.left)} {relation} {equation_latex(condition.right)}"
 
 

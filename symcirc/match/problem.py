@@ -12,7 +12,7 @@ from symcirc.transfer.function import TransferFunction
 
 #: How far the target's numerator binds: as it stands, up to its sign, or up to a constant factor.
 Gain = Literal["exact", "magnitude", "free"]
-Relation = Literal[">", ">=", "<", "<=", "=", "!="]
+Relation = Literal[">", ">=", "<", "<=", "="]
 
 
 @dataclass(frozen=True)

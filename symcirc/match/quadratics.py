@@ -30,12 +30,6 @@ class Quadratic:
     form: Form
     side: int
 
-    @property
-    def discriminant(self) -> PolyElement:
-        """b² - 4ac."""
-        c, b, a = self.form.coefficients
-        return b**2 - 4 * a * c
-
     def root_claims(self, known: Sequence[Claim], quantities: Quantities) -> list[Claim] | None:
         """Return claims that hold just where the root is positive, given that it is real; as for ``positivity``."""
         c, b, a = self.form.coefficients

@@ -150,6 +150,13 @@ def value_at(polynomial: PolyElement, values: Sequence[Any]) -> Any:
     return total(terms)
 
 
+def known_value(polynomial: PolyElement, values: Sequence[Any]) -> Any:
+    """Return the value of a polynomial; None where it holds a quantity without a value."""
+    if any(e and values[k] is None for monomial in polynomial for k, e in enumerate(monomial)):
+        return None
+    return value_at(polynomial, [reals.mpf(0) if v is None else v for v in values])
+
+
 def is_met(equation: PolyElement, values: Sequence[Any], tolerance: Any = _MET) -> bool:
     """Tell whether an equation holds at a point, real or complex, in proportion to the sizes of its terms."""
     sizes = equation.ring.from_dict({m: abs(c) for m, c in equation.items()})

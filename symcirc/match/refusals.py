@@ -70,8 +70,17 @@ def contradiction(problem: Problem) -> Refusal:
     whatever = f", whatever the values of {chosen}" if chosen else ""
     return Refusal(
         "negative",
-        f"no positive {listed(problem.unknowns)} give this target{whatever}",
+        f"no positive {listed([*problem.unknowns, *problem.positives])} give this target{whatever}",
         "ask for another target, or leave other parts to be solved for",
+    )
+
+
+def undetermined() -> Refusal:
+    """Return the refusal of numbers for which formulas divide by zero however the equations are solved."""
+    return Refusal(
+        "given up",
+        "for these numbers the design equations divide by zero",
+        "change one of the chosen values a little, or leave other parts to be solved for",
     )
 
 
@@ -85,29 +94,36 @@ def no_branch(
         problem: for units and numbers.
         quantities: the ring.
     """
-    unmet = []
-    for candidate, claims in failed:
-        values = [reals.mpf(0) if v is None else v for v in candidate.values]
-        missed = [claim for claim in claims or () if not claim.is_met(values)]
-        if missed and not any(holds_any(f, quantities.unknowns) for f in missed[0].factors):
-            unmet.append((len(missed), missed[0], candidate))
-    if unmet:
-        _, claim, candidate = min(unmet, key=lambda entry: entry[0])
-        violated = condition(claim, quantities)
-        return Refusal(
-            "negative",
-            violation(violated, _numbers(candidate, quantities), problem.units),
-            f"choose values with {condition_text(violated)}",
-            condition=violated,
-        )
-    candidate = failed[0][0]
-    form = candidate.forms[len(candidate.choices) - 1]
-    name, value = quantities.name(form.unknown), candidate.values[form.unknown]
-    if value is None or reals.isnan(value):
+    missed = [
+        (any(holds_any(f, quantities.unknowns) for f in claim.factors), k, claim, candidate)
+        for candidate, claims in failed
+        for k, claim in enumerate(claims or ())
+        if claim.is_missed(candidate.values)
+    ]
+    failing = [candidate for candidate, _ in failed if candidate.fails]
+    if missed:
+        in_parts, _, claim, candidate = min(missed, key=lambda entry: entry[:2])
+        if not (in_parts and failing):
+            return _violated(condition(claim, quantities), candidate, problem, quantities)
+    if not failing:
+        return contradiction(problem)
+    form = failing[0].forms[len(failing[0].choices) - 1]
+    name, value = quantities.name(form.unknown), failing[0].values[form.unknown]
+    if reals.isnan(value):
         cause = f"the equation for {name} has no positive root for these numbers"
     else:
         cause = f"{name} would have to be {engineering(float(value), problem.units.get(name, ''))}"
     return Refusal("negative", cause, "choose other values, or leave other parts to be solved for")
+
+
+def _violated(violated: Condition, candidate: Candidate, problem: Problem, quantities: Quantities) -> Refusal:
+    """Return the refusal that tells a condition and the numbers that are against it."""
+    return Refusal(
+        "negative",
+        violation(violated, _numbers(candidate, quantities), problem.units),
+        f"choose values with {condition_text(violated)}",
+        condition=violated,
+    )
 
 
 def _numbers(candidate: Candidate, quantities: Quantities) -> dict[str, Any]:

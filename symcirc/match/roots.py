@@ -1,24 +1,28 @@
 """Real roots of polynomials with real coefficients in decimals: how many there are, and where.
 
 They are counted with Sturm's sequence (C. Sturm, "Mémoire sur la résolution des équations numériques", 1829, from
-memory), in exact arithmetic on the coefficients as they are given, to 60 digits and more. A remainder whose
-coefficients are all below 1e-50 of those it came from counts as zero: the sequence then ends in the factor of the
-roots that are multiple, and each of these counts once.
+memory), in arithmetic of 250 digits on the coefficients as they are given, to 60 digits and more, so that rounding
+is far below what decides. A remainder whose coefficients are all below 1e-50 of those it came from counts as zero:
+the sequence then ends in the factor of the roots that are multiple, and each of these counts once.
 """
 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from fractions import Fraction
 from itertools import pairwise
 from typing import Any
 
-from symcirc.match.decimals import as_fraction, reals
+from mpmath import MPContext
 
-#: What counts as zero beside 1.
-_ZERO = Fraction(1, 10**50)
+from symcirc.match.decimals import reals
 
-Polynomial = list[Fraction]  # ascending powers, the last one not zero
+#: The arithmetic of Sturm's sequence.
+_wide: Any = MPContext()
+_wide.dps = 250
+#: What counts as zero beside 1; for complex polynomials at a random point less is asked.
+_ZERO, _ALIKE = reals.mpf(10) ** -50, reals.mpf(10) ** -40
+
+Polynomial = list[Any]  # ascending powers, the last one not zero
 
 
 def positive_roots(coefficients: Sequence[Any]) -> list[Any]:
@@ -40,13 +44,13 @@ def positive_roots(coefficients: Sequence[Any]) -> list[Any]:
     if len(kept) < 2:
         return []
     size = reals.root(abs(kept[0] / kept[-1]), len(kept) - 1)  # the geometric mean of the sizes of the roots
-    scaled = _normal([as_fraction(c * size**k) for k, c in enumerate(kept)])
+    scaled = _normal([_wide.mpf(c * size**k) for k, c in enumerate(kept)])
     sequence = sturm_sequence(scaled)
     if len(sequence[-1]) > 1:  # the factor of the multiple roots
-        scaled = _normal(_divided(scaled, sequence[-1])[0])
+        scaled = _normal(_long_division(scaled, sequence[-1])[0])
         sequence = sturm_sequence(scaled)
-    decimals = [reals.mpf(c.numerator) / c.denominator for c in scaled]
-    return [size * _refined(decimals, low, high) for low, high in _isolated(sequence)]
+    decimals = [reals.mpf(c) for c in scaled]
+    return [size * _refined(decimals, reals.mpf(low), reals.mpf(high)) for low, high in _isolated(sequence)]
 
 
 def real_roots(coefficients: Sequence[Any]) -> list[Any]:
@@ -63,12 +67,12 @@ def real_roots(coefficients: Sequence[Any]) -> list[Any]:
 def sturm_sequence(polynomial: Polynomial) -> list[Polynomial]:
     """Return Sturm's sequence of a polynomial whose largest coefficient is of size 1.
 
-    >>> [[int(c) for c in p] for p in sturm_sequence([Fraction(c) for c in (1, 0, -1)])]
+    >>> [[int(c) for c in p] for p in sturm_sequence([reals.mpf(c) for c in (1, 0, -1)])]
     [[1, 0, -1], [0, -1], [-1]]
     """
     sequence = [polynomial, _normal([k * c for k, c in enumerate(polynomial)][1:])]
     while len(sequence[-1]) > 1:
-        rest = _divided(sequence[-2], sequence[-1])[1]
+        rest = _long_division(sequence[-2], sequence[-1])[1]
         while rest and abs(rest[-1]) <= _ZERO:
             rest.pop()
         if not rest:
@@ -83,39 +87,28 @@ def _normal(polynomial: Polynomial) -> Polynomial:
     return [c / largest for c in polynomial]
 
 
-def _divided(one: Polynomial, other: Polynomial) -> tuple[Polynomial, Polynomial]:
-    """Return quotient and remainder; the remainder's leading coefficients may be zero."""
-    rest, quotient = list(one), []
-    for shift in range(len(one) - len(other), -1, -1):
-        factor = rest[-1] / other[-1]
-        quotient.append(factor)
-        for k, c in enumerate(other):
-            rest[k + shift] -= factor * c
-        rest.pop()
-    return quotient[::-1], rest
-
-
-def _value(polynomial: Polynomial, x: Fraction) -> Fraction:
-    total = Fraction(0)
+def _value(polynomial: Polynomial, x: Any) -> Any:
+    total = _wide.mpf(0)
     for c in reversed(polynomial):
         total = total * x + c
     return total
 
 
-def _changes(sequence: list[Polynomial], x: Fraction) -> int:
+def _changes(sequence: list[Polynomial], x: Any) -> int:
     """Return the number of changes of sign along the sequence at ``x``."""
     signs = [v > 0 for v in (_value(p, x) for p in sequence) if v]
     return sum(a != b for a, b in pairwise(signs))
 
 
-def _isolated(sequence: list[Polynomial]) -> list[tuple[Fraction, Fraction]]:
+def _isolated(sequence: list[Polynomial]) -> list[tuple[Any, Any]]:
     """Return, for each positive root, an interval open below that holds it alone."""
     bound = 1 + max(map(abs, sequence[0][:-1])) / abs(sequence[0][-1])  # Cauchy's bound
-    waiting = [(Fraction(0), _changes(sequence, Fraction(0)), bound, _changes(sequence, bound))]
+    zero = _wide.mpf(0)
+    waiting = [(zero, _changes(sequence, zero), bound, _changes(sequence, bound))]
     intervals = []
     while waiting:
         low, at_low, high, at_high = waiting.pop()
-        if at_low - at_high == 1:
+        if at_low - at_high == 1 or (at_low > at_high and high - low <= _ZERO * high):
             intervals.append((low, high))
         elif at_low > at_high:
             middle = (low + high) / 2
@@ -124,9 +117,8 @@ def _isolated(sequence: list[Polynomial]) -> list[tuple[Fraction, Fraction]]:
     return intervals
 
 
-def _refined(coefficients: list[Any], low: Fraction, high: Fraction) -> Any:
+def _refined(coefficients: list[Any], below: Any, above: Any) -> Any:
     """Return the root in an interval that holds one, to the working precision, by halving it."""
-    below, above = (reals.mpf(x.numerator) / x.denominator for x in (low, high))
     falling = coefficients[::-1]
     side = reals.sign(reals.polyval(falling, above))
     if not side:
@@ -144,7 +136,7 @@ def _refined(coefficients: list[Any], low: Fraction, high: Fraction) -> Any:
 
 
 def complex_roots(coefficients: Sequence[Any]) -> list[Any]:
-    """Return all roots of a polynomial with complex coefficients, ascending powers, the last one not zero.
+    """Return the roots, each once, of a polynomial with complex coefficients, ascending powers, the last not zero.
 
     >>> [reals.nstr(root, 5) for root in complex_roots([reals.mpf(4), reals.mpf(0), reals.mpf(1)])]
     ['(0.0 - 2.0j)', '(0.0 + 2.0j)']
@@ -156,5 +148,31 @@ def complex_roots(coefficients: Sequence[Any]) -> list[Any]:
         return [reals.mpf(0), *complex_roots(coefficients[1:])]
     size = reals.root(abs(coefficients[0] / coefficients[-1]), degree)
     scaled = [c * size**k for k, c in enumerate(coefficients)]
-    falling = [c / scaled[-1] for c in reversed(scaled)]
-    return [size * root for root in reals.polyroots(falling, maxsteps=200, extraprec=200)]
+    simple = _without_multiples([c / max(map(abs, scaled)) for c in scaled])
+    return [size * root for root in reals.polyroots(simple[::-1], maxsteps=200, extraprec=200)]
+
+
+def _without_multiples(coefficients: list[Any]) -> list[Any]:
+    """Return a polynomial, its largest coefficient of size 1, with each root once (by Euclid's algorithm)."""
+    one, other = coefficients, [k * c for k, c in enumerate(coefficients)][1:]
+    while len(other) > 1:
+        rest = _long_division(one, other)[1]
+        size = max(map(abs, other))
+        while rest and abs(rest[-1]) <= _ALIKE * size:
+            rest.pop()
+        if not rest:
+            return _long_division(coefficients, other)[0]
+        one, other = other, [c / max(map(abs, rest)) for c in rest]
+    return coefficients
+
+
+def _long_division(one: list[Any], other: list[Any]) -> tuple[list[Any], list[Any]]:
+    """Return quotient and remainder; the remainder's leading coefficients may be zero."""
+    rest, quotient = list(one), []
+    for shift in range(len(one) - len(other), -1, -1):
+        factor = rest[-1] / other[-1]
+        quotient.append(factor)
+        for k, c in enumerate(other):
+            rest[k + shift] -= factor * c
+        rest.pop()
+    return quotient[::-1], rest

@@ -8,14 +8,16 @@ import sympy
 from sympy.polys.rings import PolyElement
 
 from symcirc.complaints import listed
-from symcirc.match.candidates import known_value
 from symcirc.match.formula import equation_text
 from symcirc.match.names import natural
 from symcirc.match.problem import Problem, Refusal, Refused
 from symcirc.match.products import expression, factored
-from symcirc.match.quantities import holds_any
+from symcirc.match.quantities import holds_any, known_value
 from symcirc.match.shapes import power_text
 from symcirc.match.system import Coefficient, Quotient, System
+
+#: Characters of a formula that a sentence can bear.
+_LONGEST_FORMULA = 80
 
 
 def screened(
@@ -57,6 +59,7 @@ def _impossible(one: Coefficient, other: Coefficient, system: System, problem: P
     quantities = system.quantities
     what = name_of(one, other, problem.function.order)
     wanted = _target_text(one, other, system)
+    mend = "ask for a target that this stage can give"
     mine, yours = quantities.sign(one.stage), quantities.sign(other.stage)
     ratio = factored(one.stage, quantities) / factored(other.stage, quantities)
     kind: Literal["gain", "sign"] = "gain" if one.where == "numerator" else "sign"
@@ -67,12 +70,10 @@ def _impossible(one: Coefficient, other: Coefficient, system: System, problem: P
     elif mine and yours and mine * yours * _target_sign(one, other, system) < 0:
         sign = "positive" if mine * yours > 0 else "negative"
         cause = f"{what} of this stage is always {sign}; the target asks for {wanted}"
-        mend = (
-            "change the sign of the target" if kind == "gain" else "ask for a target that this stage can give"
-        )
+        mend = "change the sign of the target" if kind == "gain" else mend
     else:
-        cause = f"{what} of this stage, {equation_text(expression(ratio, quantities))}, is never {wanted}"
-        mend = "ask for a target that this stage can give"
+        shown = _shown(expression(ratio, quantities), ", {},")
+        cause = f"{what} of this stage{shown} is never {wanted}"
     return Refusal(kind, cause, mend)
 
 
@@ -111,12 +112,18 @@ def _check_chosen(one: Coefficient, other: Coefficient, system: System, problem:
     what = name_of(one, other, problem.function.order)
     given = quotient_expression(Quotient(one.stage, other.stage), system)
     names = listed(sorted((str(s) for s in given.free_symbols), key=natural), last="or")
-    sentence = f"{what} is {equation_text(given)}, which is not left to be solved for"
+    sentence = f"{what}{_shown(given, ', {},')} is not left to be solved for"
     mend = f"let {names} be solved for, or make this the target"
     if value is not None and known_value(other.stage, start):
         number = known_value(one.stage, start) / known_value(other.stage, start)
-        sentence += f", and {float(number):.6g}"
+        sentence += f" and comes to {float(number):.6g}"
     raise Refused(Refusal("few", f"{sentence}; the target asks for {_target_text(one, other, system)}", mend))
+
+
+def _shown(formula: sympy.Expr, pattern: str) -> str:
+    """Return a formula's text in a pattern; nothing where it is too long for a sentence."""
+    text = equation_text(formula)
+    return pattern.format(text) if len(text) <= _LONGEST_FORMULA else ""
 
 
 def name_of(one: Coefficient, other: Coefficient, order: int) -> str:

@@ -9,7 +9,7 @@ from sympy.polys.rings import PolyElement
 
 from symcirc.complaints import InternalFault
 from symcirc.match.branches import Region
-from symcirc.match.candidates import Candidate, Degenerate, candidates, known_value
+from symcirc.match.candidates import Candidate, Degenerate, candidates
 from symcirc.match.cases import missing_cases
 from symcirc.match.chains import Chain, chains, random_point, solutions_at
 from symcirc.match.claims import Claim
@@ -17,7 +17,7 @@ from symcirc.match.counting import count
 from symcirc.match.decimals import reals
 from symcirc.match.problem import Branch, Problem, Refusal, Refused, Solutions
 from symcirc.match.quantities import Quantities, is_met
-from symcirc.match.refusals import contradiction, left_open, no_branch, too_few, too_many
+from symcirc.match.refusals import contradiction, left_open, no_branch, too_few, too_many, undetermined
 from symcirc.match.screening import partner_of, screened
 from symcirc.match.shapes import check_order, check_shapes
 from symcirc.match.system import Coefficient, System, build_system
@@ -70,7 +70,7 @@ def _solved(problem: Problem, sign: int, work: Work) -> list[Branch]:
     try:
         return _branches(build_system(problem, sign, numbers_in=True), problem, work)
     except Degenerate:
-        raise Refused(refusal or contradiction(problem)) from None
+        raise Refused(refusal or undetermined()) from None
     except Refused as refused:
         raise Refused(refusal or refused.refusal) from None
 
@@ -102,7 +102,7 @@ def _branches(system: System, problem: Problem, work: Work) -> list[Branch]:
         written = Writer(system, (*solvable.fixed, *met), work)
         for candidate in candidates(chain, quantities):
             region = written.region(candidate)
-            if candidate.fails or not _positives_are(candidate, system):
+            if candidate.fails or _misses(candidate, region, system):
                 failed.append((candidate, None if region is None else region.claims))
             elif not _follow(solvable.consequences, candidate, chain, quantities):
                 missed = True
@@ -161,13 +161,12 @@ def _chains(solvable: _Solvable, work: Work) -> list[Chain]:
     return [c for s in states for c in chains(s, solvable.equations, pool, quantities, work)]
 
 
-def _positives_are(candidate: Candidate, system: System) -> bool:
-    """Tell whether what must be positive beyond the parts is so, as far as numbers are known."""
-    for quotient in system.positives.values():
-        above, below = (known_value(p, candidate.values) for p in (quotient.above, quotient.below))
-        if above is not None and below is not None and not above * below > 0:
-            return False
-    return True
+def _misses(candidate: Candidate, region: Region | None, system: System) -> bool:
+    """Tell whether the numbers that are known are against a candidate with some values open, or against a tie."""
+    if None in candidate.values and region is not None:
+        return any(claim.is_missed(candidate.values) for claim in region.claims)
+    tied = [Claim((quotient.above, quotient.below)) for quotient in system.positives.values()]
+    return any(claim.is_missed(candidate.values) for claim in tied)
 
 
 def _follow(
@@ -194,5 +193,5 @@ def _check(candidate: Candidate, region: Region, solvable: _Solvable) -> None:
         if not is_met(equation, candidate.values, reals.mpf(10) ** -12):
             raise InternalFault(f"a solution of the match does not solve {equation} = 0")
     for claim in region.claims:
-        if not claim.is_met(candidate.values):
+        if claim.is_missed(candidate.values):
             raise InternalFault(f"a solution of the match contradicts its condition on {claim.factors}")

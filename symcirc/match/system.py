@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, replace
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
 from math import lcm
 
 import sympy
@@ -16,6 +16,7 @@ from symcirc.match.decimals import decimal, fraction_near
 from symcirc.match.names import natural
 from symcirc.match.problem import Problem, Refusal, Refused
 from symcirc.match.quantities import Quantities
+from symcirc.match.stage import StageInRing
 
 
 @dataclass(frozen=True)
@@ -81,21 +82,25 @@ class _Target:
 def build_system(problem: Problem, sign: int, numbers_in: bool = False) -> System:
     """Return the system of a problem, its numerator's target times ``sign``.
 
-    With ``numbers_in`` the known values of chosen quantities count from the start, as constants.
+    With ``numbers_in`` the known values of chosen quantities are put in from the start; without it only those
+    that are not positive, as symbols count as positive.
 
     Raises Refused where the target holds an unknown or is no real expression.
     """
+    numbers = {
+        name: number
+        for name, number in problem.known.items()
+        if name not in problem.unknowns and (numbers_in or not decimal(number) > 0)
+    }
     constants = Constants()
-    targets = _targets(problem, constants, sign)
-    positives = {n: constants.rational(_positive(e)) for n, e in problem.positives.items()}
-    stage = _Stage(problem, constants)
+    targets = _targets(problem, numbers, constants, sign)
+    positives = {n: constants.rational(_placed(e, numbers)) for n, e in problem.positives.items()}
+    stage = StageInRing(problem.function, numbers, constants)
     wanted = [t.value for t in targets] + [t.relative for t in targets if t.relative is not None]
     _check_free(problem, wanted)
     symbols = set().union(*(e.free_symbols for e in [*wanted, *positives.values(), *stage.expressions]))
     names = {str(s) for s in symbols} - {str(s) for s in constants.meanings()} | stage.names
     quantities = _quantities(problem, constants, names)
-    if numbers_in:
-        quantities = replace(quantities, decimals={**quantities.numbers, **quantities.decimals}, numbers={})
     ring = quantities.ring.clone(domain=QQ)
     rows = stage.in_ring(ring)
     groups: dict[str, list[Coefficient]] = {"denominator": [], "numerator": []}
@@ -113,9 +118,11 @@ def build_system(problem: Problem, sign: int, numbers_in: bool = False) -> Syste
     )
 
 
-def _positive(expression: sympy.Expr) -> sympy.Expr:
-    """Return the expression with positive symbols, so that roots of squares come out plain."""
-    return expression.xreplace({s: sympy.Symbol(str(s), positive=True) for s in expression.free_symbols})
+def _placed(expression: sympy.Expr, numbers: Mapping[str, sympy.Expr]) -> sympy.Expr:
+    """Return an expression with numbers put in, its symbols positive, so that roots of squares come out plain."""
+    return expression.subs(
+        {s: numbers.get(str(s), sympy.Symbol(str(s), positive=True)) for s in expression.free_symbols}
+    )
 
 
 def _plain(expression: sympy.Expr) -> sympy.Expr:
@@ -123,9 +130,11 @@ def _plain(expression: sympy.Expr) -> sympy.Expr:
     return expression.xreplace({s: sympy.Symbol(str(s)) for s in expression.free_symbols})
 
 
-def _targets(problem: Problem, constants: Constants, sign: int) -> list[_Target]:
-    below = [_positive(t) for t in problem.target_denominator]
-    above = [sign * _positive(t) for t in problem.target_numerator]
+def _targets(
+    problem: Problem, numbers: Mapping[str, sympy.Expr], constants: Constants, sign: int
+) -> list[_Target]:
+    below = [_placed(t, numbers) for t in problem.target_denominator]
+    above = [sign * _placed(t, numbers) for t in problem.target_numerator]
     above += [sympy.S.Zero] * (len(below) - len(above))
     targets = [_Target("denominator", k, constants.rational(t), None) for k, t in enumerate(below)]
     for power, (number, other) in enumerate(zip(above, below, strict=True)):
@@ -159,18 +168,18 @@ def _quantities(problem: Problem, constants: Constants, names: set[str]) -> Quan
     symbols = [sympy.Symbol(name, positive=True) for name in (*unknowns, *chosen)]
     ring = PolyRing([*symbols, *meanings], ZZ, lex)
     everything = {k: _plain(meanings.get(s, s)) for k, s in enumerate(ring.symbols)}
-    first = len(symbols)
-    fixed = {k: e for k, e in everything.items() if k >= first and e.is_number}
-    numbers = {
-        k: decimal(problem.known[str(s)])
-        for k, s in enumerate(symbols)
-        if str(s) in problem.known and k >= len(unknowns)
+    fixed = {k: e for k, e in everything.items() if k >= len(symbols) and e.is_number}
+    known = {
+        s: problem.known[str(s)]
+        for e in everything.values()
+        for s in e.free_symbols
+        if str(s) in problem.known
     }
-    for k in range(first, ring.ngens):
-        if k not in fixed and all(str(s) in problem.known for s in everything[k].free_symbols):
-            numbers[k] = decimal(
-                everything[k].subs({s: problem.known[str(s)] for s in everything[k].free_symbols})
-            )
+    numbers = {
+        k: decimal(e.subs(known))
+        for k, e in everything.items()
+        if k >= len(unknowns) and k not in fixed and e.free_symbols <= known.keys()
+    }
     return Quantities(
         ring=ring,
         unknowns=tuple(range(len(unknowns))),
@@ -184,73 +193,6 @@ def _quantities(problem: Problem, constants: Constants, names: set[str]) -> Quan
         },
         numbers=numbers,
     )
-
-
-class _Stage:
-    """The coefficients of a stage on their way into the ring."""
-
-    def __init__(self, problem: Problem, constants: Constants) -> None:
-        self.function = problem.function
-        source = self.function.ring
-        rows = (*self.function.numerator, *self.function.denominator)
-        used = [k for k in range(source.ngens) if any(m[k] for row in rows for m in row)]
-        known = {name: e for name, e in problem.known.items() if name not in problem.unknowns}
-        self.replaced = {
-            k: constants.rational(_meaning(str(source.symbols[k]), known))
-            for k in used
-            if _is_constant(str(source.symbols[k]), known)
-        }
-        self.names = {str(source.symbols[k]) for k in used if k not in self.replaced}
-        numbers = {c for row in rows for c in row.values()}
-        self.coefficients = {c: constants.rational(source.domain.to_sympy(c)) for c in numbers}
-        self.expressions = [*self.replaced.values(), *self.coefficients.values()]
-
-    def in_ring(self, ring: PolyRing) -> dict[str, list[PolyElement]]:
-        """Return both rows of coefficients over the integers, multiplied by what that takes."""
-        positions = {str(s): k for k, s in enumerate(ring.symbols)}
-        source = self.function.ring
-        factors = {c: ring.from_expr(e) for c, e in self.coefficients.items()}
-        generators = [
-            ring.from_expr(self.replaced[k])
-            if k in self.replaced
-            else ring.gens[positions[str(s)]]
-            if str(s) in positions
-            else ring.one
-            for k, s in enumerate(source.symbols)
-        ]
-        rows = {
-            "numerator": [_converted(p, factors, generators, ring) for p in self.function.numerator],
-            "denominator": [_converted(p, factors, generators, ring) for p in self.function.denominator],
-        }
-        common = lcm(*(int(c.denominator) for row in rows.values() for p in row for c in p.values()))
-        return {
-            where: [(p * common).set_ring(ring.clone(domain=ZZ)) for p in row] for where, row in rows.items()
-        }
-
-
-def _is_constant(name: str, known: Mapping[str, sympy.Expr]) -> bool:
-    """Tell whether a symbol of the stage stands for its number: pi, and what is known not to be positive."""
-    return name == "pi" or (name in known and not decimal(known[name]) > 0)
-
-
-def _meaning(name: str, known: Mapping[str, sympy.Expr]) -> sympy.Expr:
-    return sympy.pi if name == "pi" else known[name]
-
-
-def _converted(
-    polynomial: PolyElement,
-    factors: Mapping[object, PolyElement],
-    generators: Sequence[PolyElement],
-    ring: PolyRing,
-) -> PolyElement:
-    total = ring.zero
-    for monomial, coefficient in polynomial.items():
-        term = factors[coefficient]
-        for generator, exponent in zip(generators, monomial, strict=True):
-            if exponent:
-                term = term * generator**exponent
-        total += term
-    return total
 
 
 def _quotient(expression: sympy.Expr, ring: PolyRing) -> Quotient:

@@ -21,8 +21,8 @@ from symcirc.match.work import StepTooLarge, Work, given_up
 
 #: How many partial orders are kept.
 BEAM = 8
-#: Equations with more terms are not factored at the start.
-MOST_FACTORED_TERMS = 60
+#: Equations with more terms are not looked at for factors.
+MOST_FACTORED_TERMS = 100
 
 
 @dataclass(frozen=True)
@@ -70,15 +70,14 @@ def triangular(
 ) -> State | None:
     """Return the best triangular form found, None where the equations contradict each other.
 
-        Where the equations do not determine all unknowns, some stay ``open`` in what is returned. Raises Refused,
-        kind "given up", where every way is too long.
+    Where the equations do not determine all unknowns, some stay ``open`` in what is returned. Raises Refused,
+    kind "given up", where every way is too long.
 
-        >>> from symcirc.match.problem import Refused
-    from symcirc.match.quantities import plain_quantities
-        >>> quantities = plain_quantities("x y", "a")
-        >>> x, y, a = quantities.ring.gens
-        >>> [step.equation for step in triangular([x * y - 1, x + y - a], (0, 1), quantities, Work()).steps]
-        [x**2 - x*a + 1, x*y - 1]
+    >>> from symcirc.match.quantities import plain_quantities
+    >>> quantities = plain_quantities("x y", "a")
+    >>> x, y, a = quantities.ring.gens
+    >>> [step.equation for step in triangular([x * y - 1, x + y - a], (0, 1), quantities, Work()).steps]
+    [x**2 - x*a + 1, x*y - 1]
     """
     search = _Search(quantities, work)
     start = search.state(search.learned(equations), State((), frozenset(unknowns)))
@@ -164,7 +163,8 @@ class _Search:
     def _by_linear(self, state: State, equation: PolyElement, unknown: int) -> State | None:
         others = tuple(e for e in state.equations if e is not equation)
         rest, lead = by_powers(equation, unknown)
-        dropped = lead.gcd(rest)
+        short = len(lead) + len(rest) <= MOST_FACTORED_TERMS
+        dropped = lead.gcd(rest) if short else self.quantities.ring.one
         linear = equation if dropped.is_ground else self.quantities.cleaned(equation.exquo(dropped))
         grown = [self._plain(put_in(e, unknown, linear, self.quantities, self.work)) for e in others]
         pivot = Pivot(unknown, linear, others, dropped)

@@ -37,7 +37,11 @@ class Work:
 
 
 def given_up() -> Refusal:
-    """Return the refusal of a match that takes too long."""
+    """Return the refusal of a match that takes too long.
+
+    >>> given_up().kind
+    'given up'
+    """
     return Refusal(
         "given up",
         "the design equations of this stage grew too large to be solved",

@@ -9,15 +9,15 @@ import sympy
 from sympy.polys.rings import PolyElement
 
 from symcirc.match.branches import Region, region_of
-from symcirc.match.candidates import Candidate, known_value
+from symcirc.match.candidates import Candidate
 from symcirc.match.claims import Claim, factors_of
 from symcirc.match.elimination import put_in
-from symcirc.match.forms import Form
-from symcirc.match.formulas import quadratic_formula, ratio_formula, root_record
+from symcirc.match.explicit import quadratic_formula, ratio_formula, root_record
+from symcirc.match.forms import Form, discriminant
 from symcirc.match.inequalities import condition
 from symcirc.match.problem import Branch, Condition, Equation, Root
 from symcirc.match.quadratics import Quadratic
-from symcirc.match.quantities import holds_any, is_met
+from symcirc.match.quantities import holds_any, is_met, known_value
 from symcirc.match.system import System
 from symcirc.match.work import StepTooLarge, Work
 
@@ -114,7 +114,8 @@ class Writer:
         found = []
         for form, choice in zip(candidate.forms, candidate.choices, strict=True):
             if form.degree == 2 and not choice:
-                discriminant = self.quantities.reduced(Quadratic(form, choice).discriminant)
-                zero = next(f for f, _ in factors_of(discriminant) if is_met(f, candidate.values))
-                found.append(condition(Claim((zero,)), self.quantities, "="))
+                square = self.quantities.reduced(discriminant(form))
+                if square:
+                    zero = next(f for f, _ in factors_of(square) if is_met(f, candidate.values))
+                    found.append(condition(Claim((zero,)), self.quantities, "="))
         return found

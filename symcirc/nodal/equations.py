@@ -221,22 +221,30 @@ class _Writer:
     # drives and what is asked -----------------------------------------------------------------------------------
 
     def add_drives(self) -> None:
+        """Add shorts and the drive. Where the live drive is at a node, what is delivered there is its own current."""
         drive = self.setup.drive
         for plus, minus in self.setup.shorts:
-            self.source(plus, minus, f"{plus} is shorted", 0)
+            self.deliver(self.source(plus, minus, f"{plus} is shorted", 0), plus, minus)
         if isinstance(drive, VoltageDrive):
-            self.source(drive.plus, drive.minus, f"the drive at {drive.plus}", 1)
+            delivered = self.source(drive.plus, drive.minus, f"the drive at {drive.plus}", 1)
+            self.delivered |= {drive.plus: [], drive.minus: []}
+            self.deliver(delivered, drive.plus, drive.minus)
         elif isinstance(drive, CurrentDrive):
-            self.delivered[drive.node].append(Term(ONE, "drive"))
+            self.delivered[drive.node] = [Term(ONE, "drive")]
         else:
             self.drive_loop(drive.amplifier, drive.node)
 
-    def source(self, plus: str, minus: str, label: str, value: int) -> None:
-        """An ideal source of ``value`` volts; its unknown current is the one it delivers into ``plus``."""
+    def source(self, plus: str, minus: str, label: str, value: int) -> Term:
+        """An ideal source of ``value`` volts; return the current that it delivers into ``plus``, an unknown."""
         name = current(plus)
         delivered = self.branch_current(current(plus, minus) if name in self.currents else name, minus, plus)
-        self.delivered[plus].append(delivered)
         self.laws.append(Equation(label, self.across(ONE, plus, minus), value))
+        return delivered
+
+    def deliver(self, delivered: Term, plus: str, minus: str) -> None:
+        """Note a current that a source delivers into ``plus`` and takes from ``minus``."""
+        self.delivered[plus].append(delivered)
+        self.delivered[minus].append(Term(delivered.weight.negative(), delivered.plus))
 
     def drive_loop(self, amplifier: str, node: str) -> None:
         """The amplifier's own law gives way to the drive at its output."""

@@ -7,47 +7,56 @@ from dataclasses import dataclass
 
 from sympy.polys.rings import PolyRing
 
-from symcirc.complaints import Complaint, listed
 from symcirc.derivation import BigAnswer, Derivation
 from symcirc.sheet.expression import Expression, names
 from symcirc.sheet.fixes import tie_order
 from symcirc.transfer.arrange import form_of
 from symcirc.transfer.text import text
 from symcirc.transfer.ties import expression_in, ring_for
-from symcirc.trees.named import named_coefficients
+from symcirc.trees.expand import symbols
+from symcirc.trees.named import Named, named_coefficients, named_polynomials
+
+
+#: A sequence that would be longer than this by powers of s is written with s inside, which is shorter by the order.
+LONGEST = 2_000
 
 
 @dataclass(frozen=True)
 class Sequence:
     """A big answer by way of named sub-expressions, each in terms of symbols and of names before it.
 
-    The ties come first. ``numerator`` and ``denominator`` hold one expression for each power of s, ascending.
+    The ties come first. ``numerator`` and ``denominator`` hold one expression for each power of s, ascending; or,
+    ``in_s``, one expression each that holds s.
     """
 
     definitions: tuple[tuple[str, str], ...]
     numerator: tuple[str, ...]
     denominator: tuple[str, ...]
+    in_s: bool
 
 
 def sequence_of(derivation: Derivation, answer: BigAnswer) -> Sequence:
     """Return a big answer as a sequence of short expressions.
 
-    Raises Complaint where a tie holds s: the coefficients by powers of s would not be those that are asked for.
+    By powers of s, but with s inside where a tie holds s (a real amplifier's gain does), or where the powers of s
+    would make it long.
     """
-    ties = ties_of(derivation.ties, {level.symbol for level in answer.diagram.levels if level.symbol})
-    holding = [name for name, tie in ties.items() if any(n.text == "s" for n in names(tie))]
-    if answer.loop_gain:
-        holding.append(answer.loop_gain)
-    if holding:
-        raise Complaint(
-            answer.ask.place,
-            f"`{answer.ask.name}` has {sum(answer.products):,} products, and {listed(holding)} may depend on s, so "
-            "its coefficients cannot be written in parts",
-            f"have it expanded: --most {sum(answer.products)}",
-        )
+    needed = set(symbols(answer.diagram)) | ({answer.loop_gain} if answer.loop_gain else set())
+    ties = ties_of(derivation.ties, needed)
     letter = _free_letter(derivation)
-    named = named_coefficients(answer.diagram, lambda k: f"{letter}{k}")
-    return Sequence((*_tie_texts(ties), *named.definitions), named.over or ("0",), named.under)
+    holds_s = any(n.text == "s" for tie in ties.values() for n in names(tie))
+    if not holds_s:
+        named = named_coefficients(answer.diagram, lambda k: f"{letter}{k}")
+        if len(named.definitions) <= LONGEST:
+            return _sequence(ties, named, answer, in_s=False)
+    return _sequence(ties, named_polynomials(answer.diagram, lambda k: f"{letter}{k}"), answer, in_s=True)
+
+
+def _sequence(ties: Mapping[str, Expression], named: Named, answer: BigAnswer, *, in_s: bool) -> Sequence:
+    over = named.over or ("0",)
+    if answer.loop_gain:  # T = -A (V+ - V-)/V_drives
+        over = tuple(c if c == "0" else f"-{answer.loop_gain}*({c})" for c in over)
+    return Sequence((*_tie_texts(ties), *named.definitions), over, named.under, in_s)
 
 
 def _free_letter(derivation: Derivation) -> str:

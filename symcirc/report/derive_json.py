@@ -44,9 +44,13 @@ def _answer(derivation: Derivation, answer: Answer | BigAnswer) -> dict[str, Any
 def _big(derivation: Derivation, answer: BigAnswer) -> dict[str, Any]:
     """A big answer: the coefficients in terms of ``definitions``, each in terms of those before it."""
     sequence = sequence_of(derivation, answer)
+    definitions = [list(definition) for definition in sequence.definitions]
+    if sequence.in_s:
+        over, under = sequence.numerator[0], sequence.denominator[0]
+        return {"definitions": definitions, "numerator_in_s": over, "denominator_in_s": under}
     highest = sequence.denominator[-1]
     return {
-        "definitions": [list(definition) for definition in sequence.definitions],
+        "definitions": definitions,
         "numerator": list(sequence.numerator),
         "denominator": list(sequence.denominator),
         "monic": {

@@ -64,9 +64,13 @@ def _big(derivation: Derivation, answer: BigAnswer) -> Iterator[str]:
         lines = broken(f"{name:{wide}} = {expression}", WIDTH - 2)
         yield from (("  " if k == 0 else " " * (wide + 5)) + readable(line) for k, line in enumerate(lines))
     yield ""
-    yield "coefficients by powers of s"
+    yield "polynomials in s" if sequence.in_s else "coefficients by powers of s"
     for label, side in (("over", sequence.numerator), ("under", sequence.denominator)):
-        yield from _coefficients(label, side)
+        if sequence.in_s:
+            lines = broken(side[0], WIDTH - 10)
+            yield from (f"  {label if k == 0 else '':7} {readable(line)}" for k, line in enumerate(lines))
+        else:
+            yield from _coefficients(label, side)
     yield ""
     yield _checked(answer)
 

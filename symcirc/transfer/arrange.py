@@ -208,18 +208,23 @@ def _divisors(polynomial: PolyElement, monomial: Exponents) -> list[Exponents]:
 
 
 def _split(letters: Alphabet, terms: Terms, depth: int) -> Summands:
-    """Return an irreducible sum's terms: plain, or collected in the way that costs least."""
-    plain = [(rank(letters, m), assemble(letters, c, m)) for m, c in terms.items()]
-    if depth == 0 or not 2 < len(terms) <= MOST_GROUPED:
-        return plain
-    groupings = [_by_reactive_parts(letters, terms)]
-    if len(terms) <= MOST_COLLECTED:
-        groupings.append(_by_shared_symbols(letters, terms))
-    candidates = [plain]
-    for groups in groupings:
-        if 1 < len(groups) < len(terms):
-            candidates.append([s for group in groups for s in _summands(letters, group, depth - 1)])
-    return min(candidates, key=lambda summands: cost(joined(summands)))
+    """Return an irreducible sum's terms: plain, or collected in the way that costs least.
+
+    A long sum is collected by capacitors and inductors without a comparison.
+    """
+    groupings: list[list[Terms]] = []
+    if depth and 2 < len(terms) <= MOST_GROUPED:
+        groupings.append(_by_reactive_parts(letters, terms))
+        if len(terms) <= MOST_COLLECTED:
+            groupings.append(_by_shared_symbols(letters, terms))
+    candidates = [
+        [s for group in groups for s in _summands(letters, group, depth - 1)]
+        for groups in groupings
+        if 1 < len(groups) < len(terms)
+    ]
+    if not candidates or len(terms) <= MOST_COLLECTED:
+        candidates.insert(0, [(rank(letters, m), assemble(letters, c, m)) for m, c in terms.items()])
+    return min(candidates, key=lambda summands: cost(joined(summands))) if candidates[1:] else candidates[0]
 
 
 def _by_reactive_parts(letters: Alphabet, terms: Terms) -> list[Terms]:

@@ -9,15 +9,13 @@ few symbols, and divides every coefficient of both polynomials with respect to a
 
 from __future__ import annotations
 
-import random
 from collections import defaultdict
 
-from sympy.polys.domains import GF, QQ
+from sympy.polys.domains import ZZ
 from sympy.polys.galoistools import gf_degree, gf_from_dict, gf_gcd
 from sympy.polys.rings import PolyElement
 
-#: A prime of 61 bits: chance agreement at random values has a probability below degree / 2e18.
-PRIME = 2**61 - 1
+from symcirc.transfer.residues import Residues, residues_for
 
 
 def remove_common_factor(
@@ -61,40 +59,27 @@ def shared_symbols(above: PolyElement, below: PolyElement) -> list[int]:
     """Return the positions of the generators that a common factor of both can hold."""
     ring = above.ring
     present = [k for k in range(ring.ngens) if above.degree(k) > 0 and below.degree(k) > 0]
-    if ring.domain != QQ:
-        return present  # over a field with roots every symbol is taken as a candidate
-    generator = random.Random(61)  # seeded: the same answer on every run
-    values = [generator.randrange(1, PRIME) for _ in range(ring.ngens)]
-    terms = [_modular_terms(above, values), _modular_terms(below, values)]
-    return [k for k in present if _image_shares(terms, k, values)]
+    if not present:
+        return []
+    point = residues_for(ring)
+    terms = [
+        [(monomial, value) for (monomial, _), value in zip(p.terms(), point.terms(p), strict=True)]
+        for p in (above, below)
+    ]
+    return [k for k in present if _image_shares(terms, k, point)]
 
 
-def _modular_terms(polynomial: PolyElement, values: list[int]) -> list[tuple[tuple[int, ...], int]]:
-    """Return each product's exponents and its value mod the prime at the random point."""
-    powers = [[1] for _ in values]
-    for k, value in enumerate(values):
-        for _ in range(max(0, polynomial.degree(k))):
-            powers[k].append(powers[k][-1] * value % PRIME)
-    result = []
-    for monomial, coefficient in polynomial.terms():
-        residue = int(coefficient.numerator) * pow(int(coefficient.denominator), -1, PRIME) % PRIME
-        for k, exponent in enumerate(monomial):
-            if exponent:
-                residue = residue * powers[k][exponent] % PRIME
-        result.append((monomial, residue))
-    return result
-
-
-def _image_shares(terms: list[list[tuple[tuple[int, ...], int]]], k: int, values: list[int]) -> bool:
-    inverse = pow(values[k], -1, PRIME)
+def _image_shares(terms: list[list[tuple[tuple[int, ...], int]]], k: int, point: Residues) -> bool:
+    prime = point.prime
+    inverse = pow(point.values[k], -1, prime)
     images = []
     for polynomial in terms:
         image: dict[int, int] = defaultdict(int)
         for monomial, residue in polynomial:
             exponent = monomial[k]
-            image[exponent] = (image[exponent] + residue * pow(inverse, exponent, PRIME)) % PRIME
-        images.append(gf_from_dict(dict(image), PRIME, GF(PRIME).dom))
-    return bool(gf_degree(gf_gcd(images[0], images[1], PRIME, GF(PRIME).dom)) > 0)
+            image[exponent] = (image[exponent] + residue * pow(inverse, exponent, prime)) % prime
+        images.append(gf_from_dict(dict(image), prime, ZZ))
+    return bool(gf_degree(gf_gcd(images[0], images[1], prime, ZZ)) > 0)
 
 
 def _common_in(above: PolyElement, below: PolyElement, shared: list[int]) -> PolyElement:

@@ -114,6 +114,8 @@ def _missing(polynomial: PolyElement, found: list[tuple[PolyElement, int]]) -> E
 
 def _split(polynomial: PolyElement) -> list[PolyElement]:
     """Return the finest factors without a symbol in common; proved by multiplying them out."""
+    if len(polynomial) < 4:
+        return [polynomial]  # each factor has two products at least
     present = [k for k in range(polynomial.ring.ngens) if any(m[k] for m in polynomial)]
     classes = _classes(polynomial, present, residues_for(polynomial.ring))
     if len(classes) == 1:

@@ -20,9 +20,11 @@ from sympy.polys.domains import QQ, ZZ
 from sympy.polys.galoistools import gf_degree, gf_edf_zassenhaus, gf_gcd, gf_monic, gf_pow_mod, gf_sub
 from sympy.polys.rings import PolyElement, PolyRing
 
-from symcirc.transfer.common import PRIME
 from symcirc.transfer.form import Divided, Form, Integer, Negative, Power, Product, Root, Sum, Symbol
+from symcirc.transfer.ties import Quotient
 
+#: A prime of 61 bits of no special form, so that no written number is likely to be a multiple of it.
+PRIME = 1570796326794896657
 #: An element of a ring's field, for which sympy has no types.
 Element = Any
 
@@ -203,12 +205,16 @@ def require_equal(form: Form, above: PolyElement, below: PolyElement) -> None:
         raise FormMismatch("a printed form is not equal to the quotient that it was made from")
 
 
-def require_square(form: Form, above: PolyElement, below: PolyElement) -> None:
-    """Raise FormMismatch unless the form's square is ``above / below``, at a random point modulo a prime.
+def require_square(form: Form, radicand: Quotient, front: Quotient) -> None:
+    """Raise FormMismatch unless the form's square is that of ``front * sqrt(radicand)``, at a random point.
 
-    >>> ring = PolyRing(["R1", "R2"], QQ)
-    >>> require_square(Root(Divided(Symbol("R1"), Symbol("R2"))), *ring.gens)
+    >>> r1, r2 = PolyRing(["R1", "R2"], QQ).gens
+    >>> require_square(Divided(Root(Symbol("R1")), Symbol("R2")), Quotient(r1, r2), Quotient(r1, r1 * r2))
+    Traceback (most recent call last):
+    symcirc.transfer.residues.FormMismatch: the square of a printed form is not equal to what it was made from
     """
-    point = residues_for(above.ring)
-    if (squared_residue(form, point) * point.polynomial(below) - point.polynomial(above)) % point.prime:
-        raise FormMismatch("the square of a printed form is not equal to the quotient that it was made from")
+    point = residues_for(radicand.above.ring)
+    above = point.polynomial(radicand.above) * point.polynomial(front.above) ** 2
+    below = point.polynomial(radicand.below) * point.polynomial(front.below) ** 2
+    if (squared_residue(form, point) * below - above) % point.prime:
+        raise FormMismatch("the square of a printed form is not equal to what it was made from")

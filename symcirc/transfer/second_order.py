@@ -20,16 +20,27 @@ from symcirc.transfer.ties import Quotient
 
 @dataclass(frozen=True)
 class SecondOrder:
-    """w0 in rad/s, f0 = w0/(2 pi) in Hz and Q, as quotients of their squares and as they are written.
+    """w0 in rad/s, f0 = w0/(2 pi) in Hz and Q as they are written, and what they come from: (a0, a1, a2).
 
     Q and its square are None where there is no damping at all (a1 = 0).
     """
 
-    omega0_squared: Quotient
-    q_squared: Quotient | None
+    coefficients: tuple[PolyElement, PolyElement, PolyElement]
     omega0: Form
     f0: Form
     q: Form | None
+
+    @property
+    def omega0_squared(self) -> Quotient:
+        """w0^2 = a0/a2 in lowest terms."""
+        a0, _, a2 = self.coefficients
+        return reduced(a0, a2)
+
+    @property
+    def q_squared(self) -> Quotient | None:
+        """Q^2 = a0 a2/a1^2 in lowest terms."""
+        a0, a1, a2 = self.coefficients
+        return reduced(a0 * a2, a1**2) if a1 else None
 
 
 @dataclass(frozen=True)
@@ -64,11 +75,8 @@ def second_order(coefficients: tuple[PolyElement, ...], positive: set[str]) -> S
     square = reduced(a0, a2)
     omega0 = square_root(square, Quotient(one, one), positive)
     f0 = square_root(_with_pi(square), _over_two_pi(Quotient(one, one)), positive)
-    if not a1:
-        return SecondOrder(square, None, omega0, f0, None)
-    return SecondOrder(
-        square, reduced(a0 * a2, a1**2), omega0, f0, square_root(square, reduced(a2, a1), positive)
-    )
+    q = square_root(square, reduced(a2, a1), positive) if a1 else None
+    return SecondOrder((a0, a1, a2), omega0, f0, q)
 
 
 def first_order(coefficients: tuple[PolyElement, ...]) -> FirstOrder | None:

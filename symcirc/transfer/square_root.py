@@ -12,13 +12,16 @@ from symcirc.transfer.arrange import form_of
 from symcirc.transfer.assemble import is_negative
 from symcirc.transfer.cost import cost
 from symcirc.transfer.factors import factorize
-from symcirc.transfer.form import ONE, Divided, Form, Negative, Product, Root, product
+from symcirc.transfer.form import ONE, Divided, Form, Negative, Product, Root, power, product
 from symcirc.transfer.residues import Element, require_square
 from symcirc.transfer.signs import sign_of
 from symcirc.transfer.ties import Quotient
 
 #: Primes up to this are taken out of whole numbers under a root; what is left is only tried as a square.
 LARGEST_PRIME = 1000
+
+#: Factors are multiplied out, to be grouped anew, up to so many products.
+MOST_MULTIPLIED = 60
 
 #: Exponents of factors, each an element of one ring, -1 one of them.
 Powers = Counter[PolyElement]
@@ -45,9 +48,9 @@ def square_root(radicand: Quotient, front: Quotient, positive: set[str]) -> Form
     ring = radicand.above.ring
     inside.update(_number_powers(ring, number * times**2))
     outside[-ring.one] += is_negative(ring.domain, times)
-    candidates = [_written(*_shared_out(inside, outside, positive, odd), radicand) for odd in (0, 1, -1)]
+    candidates = [_written(ring, *_shared_out(inside, outside, positive, odd)) for odd in (0, 1, -1)]
     form = min(candidates, key=cost)
-    require_square(form, front.above**2 * radicand.above, front.below**2 * radicand.below)
+    require_square(form, radicand, front)
     return form
 
 
@@ -111,31 +114,37 @@ def _is_positive(factor: PolyElement, positive: set[str]) -> bool:
     return sign_of(factor, positive) > 0
 
 
-def _written(under: dict[PolyElement, int], before: dict[PolyElement, int], like: Quotient) -> Form:
+def _written(ring: PolyRing, under: dict[PolyElement, int], before: dict[PolyElement, int]) -> Form:
     """Return the form of the root and what stands in front; below the line if nothing is above it."""
-    root = _multiplied(under, like)
-    front = _multiplied(before, like)
-    form = form_of(front.above, front.below)
-    if root.above == root.below:
-        return form
-    if root.above == like.above.ring.one:
-        return _with_root(form, ONE, Root(form_of(root.below, root.above)))
-    return _with_root(form, Root(form_of(root.above, root.below)), ONE)
+    root, front = _quotient(ring, under), _quotient(ring, before)
+    if root == ONE:
+        return front
+    if isinstance(root, Divided) and root.above == ONE:
+        return _with_factor(front, ONE, Root(root.below))
+    return _with_factor(front, Root(root), ONE)
 
 
-def _multiplied(powers: dict[PolyElement, int], like: Quotient) -> Quotient:
-    above = below = like.above.ring.one
-    for factor, exponent in powers.items():
-        if factor == -like.above.ring.one:
-            exponent %= 2
-        above, below = above * factor ** max(exponent, 0), below * factor ** max(-exponent, 0)
-    return Quotient(above, below)
+def _quotient(ring: PolyRing, powers: dict[PolyElement, int]) -> Form:
+    """Return the form of a product of factors: multiplied out and grouped anew, unless that would be long."""
+    powers = {f: e % 2 if f == -ring.one else e for f, e in powers.items()}
+    long = [f for f, e in powers.items() if len(f) > 1 and e]
+    if math.prod(len(f) ** abs(powers[f]) for f in long) <= MOST_MULTIPLIED:
+        long = []
+    above, below = (
+        math.prod((f ** max(side * e, 0) for f, e in powers.items() if f not in long), start=ring.one)
+        for side in (1, -1)
+    )
+    form = form_of(above, below)
+    for factor in long:
+        bracket = power(form_of(factor, ring.one), abs(powers[factor]))
+        form = _with_factor(form, *((bracket, ONE) if powers[factor] > 0 else (ONE, bracket)))
+    return form
 
 
-def _with_root(form: Form, above: Form, below: Form) -> Form:
-    """Return a form times a root that stands last above or below the line."""
+def _with_factor(form: Form, above: Form, below: Form) -> Form:
+    """Return a form times ``above`` and over ``below``, which stand last on their side of the line."""
     if isinstance(form, Negative):
-        return Negative(_with_root(form.operand, above, below))
+        return Negative(_with_factor(form.operand, above, below))
     upper, lower = (form.above, form.below) if isinstance(form, Divided) else (form, ONE)
     upper, lower = product([*_factors(upper), above]), product([*_factors(lower), below])
     return upper if lower == ONE else Divided(upper, lower)

@@ -63,7 +63,7 @@ def determinants(circuit: Circuit, setup: Setup, most_states: int | None = None)
 
     Raises:
         KeyError: an asked part is not in the circuit, or a device is of an unknown kind.
-        TooManyStates: the diagram would be larger than ``most_states`` (see :mod:`symcirc.trees.walk`).
+        TooManyStates: the diagram would be larger than ``most_states`` (see :mod:`symcirc.trees.frontier`).
     """
     graphs = relevant(two_graphs(circuit, setup))
     return diagram(walk(graphs, best_order(graphs), most_states), graphs.idle)

@@ -109,7 +109,7 @@ def narrows(diagram: Diagram) -> dict[int, tuple[int, int]]:
 
     Returns:
         {level: (state of over, state of under)}. All ways pass through them, so there each polynomial is a
-        product. None where a root is zero.
+        product. Empty where a root is zero.
     """
     if 0 in diagram.roots:
         return {}

@@ -21,6 +21,14 @@ Partition = bytes
 Positions = tuple[int, int]
 
 
+#: A partition is a byte string, which has room for so many blocks.
+_WIDEST = 255
+
+
+class TooManyStates(Exception):
+    """The walk would need more states than it was allowed, or than could ever be walked."""
+
+
 @dataclass(frozen=True)
 class Step:
     """What one part does to the frontier of one graph.
@@ -42,6 +50,9 @@ def steps(nodes: Sequence[str], levels: Sequence[Sequence[tuple[Edge, ...]]]) ->
         nodes: all nodes of the graph.
         levels: for every level, the edges of each of its choices.
 
+    Raises:
+        TooManyStates: the frontier is wider than a partition can be.
+
     >>> list(steps(["a", "b"], [[(("a", "b"),), ()]]))
     [Step(entering=2, edges=(((0, 1),), ()), leaving=(1, 0), closing=True)]
     """
@@ -60,6 +71,8 @@ def steps(nodes: Sequence[str], levels: Sequence[Sequence[tuple[Edge, ...]]]) ->
         if not number:
             entering += [node for node in nodes if node in lonely]
         frontier += entering
+        if len(frontier) > _WIDEST:
+            raise TooManyStates(f"a frontier of {len(frontier)} nodes")
         waiting -= len(entering)
         place = {node: position for position, node in enumerate(frontier)}
         edges = tuple(tuple((place[one], place[two]) for one, two in choice) for choice in choices)

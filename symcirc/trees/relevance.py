@@ -62,11 +62,13 @@ def _tableau(graphs: TwoGraphs) -> Rows:
         current, voltage = _sides(element)
         column = _incidence([(edge, value(weight)) for edge, weight in current], graphs.current_ground)
         row = _incidence([(edge, value(weight)) for edge, weight in voltage], graphs.voltage_ground)
-        if _is_optional(element):
-            _stamp(rows, column, row)
+        left_out = next((c.weight for c in element.choices if not c.current and not c.voltage), None)
+        if left_out is not None:
+            # the weight is on both sides: the square of one random number is as random as another
+            _stamp(rows, column, row, pow(value(left_out), -2, _PRIME))
             continue
         if current:
-            _stamp(rows, column, {own: 1})
+            _stamp(rows, column, {own: 1}, 1)
         if voltage:
             rows[own] = row
     return rows
@@ -79,10 +81,6 @@ def _sides(element: Element) -> tuple[list[tuple[Edge, Weight]], list[tuple[Edge
     current = [(c.current[0], c.weight) for c in present if c.current and c.voltage == lead.voltage]
     voltage = [(c.voltage[0], c.weight) for c in present if c.voltage and c.current == lead.current]
     return current, voltage
-
-
-def _is_optional(element: Element) -> bool:
-    return any(not choice.current and not choice.voltage for choice in element.choices)
 
 
 class _Values:
@@ -112,11 +110,12 @@ def _incidence(edges: Iterable[tuple[Edge, int]], ground: str) -> Row:
     return line
 
 
-def _stamp(rows: Rows, column: Row, row: Row) -> None:
-    for line, factor in column.items():
+def _stamp(rows: Rows, column: Row, row: Row, factor: int) -> None:
+    """Add the outer product of a column and a row times a factor."""
+    for line, left in column.items():
         entries = rows[line]
-        for place, value in row.items():
-            entries[place] = (entries.get(place, 0) + factor * value) % _PRIME
+        for place, right in row.items():
+            entries[place] = (entries.get(place, 0) + left * right * factor) % _PRIME
 
 
 def _with_root(base: Rows, graphs: TwoGraphs, root: Root) -> Rows:
@@ -127,7 +126,7 @@ def _with_root(base: Rows, graphs: TwoGraphs, root: Root) -> Rows:
     if root.voltage:
         rows[_ASKED] = asked
     if root.current:
-        _stamp(rows, column, {_ASKED: 1})
+        _stamp(rows, column, {_ASKED: 1}, 1)
     if not root.voltage and not root.current:
         rows[_ASKED] = {_ASKED: 1}
     return rows

@@ -14,7 +14,7 @@ from array import array
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
-from symcirc.trees.frontier import Catalogue, Step, Table, steps
+from symcirc.trees.frontier import Catalogue, Step, Table, TooManyStates, steps
 from symcirc.trees.graphs import Element, TwoGraphs
 from symcirc.trees.laws import Choice, Edge
 
@@ -43,10 +43,6 @@ class Walk:
     catalogue: Catalogue
 
 
-class TooManyStates(Exception):
-    """The walk would need more states than it was allowed."""
-
-
 def walk(graphs: TwoGraphs, order: Sequence[int], most_states: int | None = None) -> Walk:
     """Walk the two graphs.
 
@@ -56,7 +52,7 @@ def walk(graphs: TwoGraphs, order: Sequence[int], most_states: int | None = None
         most_states: give up beyond this number of states; without it, never.
 
     Raises:
-        TooManyStates: there are more states than ``most_states``.
+        TooManyStates: there are more states than ``most_states``, or the frontier is hopelessly wide.
     """
     elements = tuple(graphs.elements[number] for number in order)
     catalogue = Catalogue()
@@ -84,7 +80,7 @@ def walk(graphs: TwoGraphs, order: Sequence[int], most_states: int | None = None
         found.append(states)
         total += len(states)
         if most_states is not None and total > most_states:
-            raise TooManyStates(total)
+            raise TooManyStates(f"more than {most_states} states")
     return Walk(elements, roots, tuple(found), tuple(codes), catalogue)
 
 
@@ -101,7 +97,9 @@ def _steps(graphs: TwoGraphs, elements: Sequence[Element]) -> Iterator[tuple[Ste
     for element in elements:
         current.append(tuple(choice.current for choice in element.choices))
         voltage.append(tuple(choice.voltage for choice in element.choices))
-    return zip(steps(graphs.current_nodes, current), steps(graphs.voltage_nodes, voltage), strict=True)
+    # both are complete before the first is used: a frontier that is too wide is noticed before the walk
+    both = [*steps(graphs.current_nodes, current)], [*steps(graphs.voltage_nodes, voltage)]
+    return zip(*both, strict=True)
 
 
 def _start(

@@ -88,11 +88,16 @@ def _opened(wiring: Wiring, quantity: Quantity, mark: str) -> tuple[Wiring, Aske
 
 
 def _sources_opened(wiring: Wiring, node: str, mark: str) -> tuple[Wiring, Branch]:
-    moved = {node: node + mark}
-    plus, *others = (
-        (moved.get(plus, plus), moved.get(minus, minus)) for plus, minus in (wiring.drive, *wiring.shorts)
-    )
-    return replace(wiring, drive=plus, shorts=tuple(others)), Branch(node + mark, node)
+    """Open what delivers into a node: the live drive at its own nodes, the shorts at any other."""
+
+    def moved(edge: Edge) -> Edge:
+        plus, minus = (node + mark if end == node else end for end in edge)
+        return plus, minus
+
+    branch = Branch(node + mark, node)
+    if node in wiring.drive:
+        return replace(wiring, drive=moved(wiring.drive)), branch
+    return replace(wiring, shorts=tuple(moved(short) for short in wiring.shorts)), branch
 
 
 def _part_opened(wiring: Wiring, quantity: PartCurrent, mark: str) -> tuple[Wiring, Branch]:

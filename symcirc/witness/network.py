@@ -217,8 +217,8 @@ class Network:
 
     def _stamp_drives(self) -> None:
         drive = self.setup.drive
-        for plus, minus in self.setup.shorts:
-            self._law(self._new_branch(f"short {plus}", (minus, plus)), (plus, minus))
+        for k, (plus, minus) in enumerate(self.setup.shorts):
+            self._law(self._new_branch(f"short {k}", (minus, plus)), (plus, minus))
         if isinstance(drive, VoltageDrive):
             row = self._new_branch("drive", (drive.minus, drive.plus))
             self._law(row, (drive.plus, drive.minus))
@@ -255,12 +255,15 @@ class Network:
         return solution[self.extra[name]]
 
     def _delivered(self, node: str, solution: Array) -> Any:
+        """Return what the live drive delivers into its node, or into any other node what the shorts there do."""
         drive = self.setup.drive
-        delivered: Any = 0
         if isinstance(drive, CurrentDrive) and drive.node == node:
-            delivered += 1
-        if isinstance(drive, VoltageDrive) and drive.plus == node:
-            delivered += solution[self.extra["drive"]]
-        if f"short {node}" in self.extra:
-            delivered += solution[self.extra[f"short {node}"]]
+            return 1
+        sources = {f"short {k}": pair for k, pair in enumerate(self.setup.shorts)}
+        if isinstance(drive, VoltageDrive) and node in (drive.plus, drive.minus):
+            sources = {"drive": (drive.plus, drive.minus)}
+        delivered: Any = 0
+        for name, (plus, minus) in sources.items():
+            if node in (plus, minus):
+                delivered += solution[self.extra[name]] * (1 if plus == node else -1)
         return delivered

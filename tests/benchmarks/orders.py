@@ -14,10 +14,11 @@ from collections.abc import Callable, Iterator
 
 import networkx as nx
 
+from symcirc.trees.frontier import TooManyStates
 from symcirc.trees.graphs import TwoGraphs, two_graphs
 from symcirc.trees.order import Incidence, best_order, by_node, by_part, incidence, widths
 from symcirc.trees.relevance import relevant
-from symcirc.trees.walk import TooManyStates, walk
+from symcirc.trees.walk import walk
 from tests.benchmarks.families import (
     Case,
     discrete_amplifier,

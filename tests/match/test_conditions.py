@@ -22,7 +22,7 @@ from tests.match.arithmetic import holds, value
 from tests.match.reference import equations, positive_solutions
 from tests.match.targets import problem, target
 
-POINTS = 250
+POINTS = 200
 T0, T1, G = sympy.symbols("t0 t1 g")
 
 

@@ -1,7 +1,12 @@
 """Every kind of refusal, with the words it must have."""
 
+import subprocess
+import sys
+
 import pytest
 import sympy
+from sympy import QQ
+from sympy.polys.rings import PolyRing
 
 from symcirc.match.problem import Gain, Problem, Refusal, Solutions
 from symcirc.match.solve import solve
@@ -129,7 +134,7 @@ TABLE = [
         "exact",
         {"k": 3},
         "few",
-        "is k, which is not left to be solved for, and 3; the target asks for 2",
+        "the gain at zero frequency, k, is not left to be solved for and comes to 3; the target asks for 2",
         "let k be solved for",
     ),
     (
@@ -139,7 +144,7 @@ TABLE = [
         "exact",
         {},
         "few",
-        "is k, which is not left to be solved for",
+        "k, is not left to be solved for",
         "let k be solved for",
     ),
     (
@@ -159,7 +164,7 @@ TABLE = [
         "exact",
         {},
         "few",
-        "C2*(R1 + R2), which is not left to be solved for",
+        "C2*(R1 + R2), is not left to be solved for",
         "R1, R2 or C2",
     ),
     (
@@ -304,4 +309,57 @@ def test_tied_part_that_would_be_negative_is_a_condition() -> None:
         k = sympy.Symbol("k")
         tied = Problem(**{**asked.__dict__, "positives": {"R3": (k - 1) * sympy.Symbol("R4")}})
         assert isinstance(solve(asked), Solutions)
-        assert isinstance(solve(tied), Solutions) == is_met
+        outcome = solve(tied)
+        assert isinstance(outcome, Solutions) == is_met
+        if isinstance(outcome, Refusal):
+            assert "no positive R1, R2, k and R3 give this target" in outcome.cause
+
+
+def test_constant_stage_is_matched_by_its_gain() -> None:
+    """An inverting amplifier, -R2/R1: no s at all."""
+    ring = PolyRing(["R1", "R2"], QQ)
+    r1, r2 = ring.gens
+    stage = TransferFunction(ring, (-r2,), (r1,))
+    outcome = solve(problem(stage, ((sympy.Integer(-5),), (sympy.S.One,)), "R2", known={"R1": 1000}))
+    assert isinstance(outcome, Solutions)
+    assert outcome.branches[0].values == {"R2": 5000.0}
+    refusal = solve(problem(stage, ((sympy.Integer(5),), (sympy.S.One,)), "R2"))
+    assert isinstance(refusal, Refusal)
+    assert "always negative" in refusal.cause
+
+
+def test_match_imports_no_heavy_numeric_library() -> None:
+    code = "import sys, symcirc.match.solve; sys.exit('scipy' in sys.modules)"
+    assert subprocess.run([sys.executable, "-c", code], check=False).returncode == 0
+
+
+def test_term_that_a_denominator_lacks_is_named() -> None:
+    """L and C without a resistor: no term in s, so that no damped response can be had."""
+    ring = PolyRing(["L1", "C1"], QQ)
+    l1, c1 = ring.gens
+    lossless = TransferFunction(ring, (ring(1),), (ring(1), ring(0), l1 * c1))
+    refusal = solve(problem(lossless, LOW, "L1"))
+    assert isinstance(refusal, Refusal)
+    assert refusal.cause == "the denominator of the stage has no term in s, that of the target has"
+    undamped = target("low-pass", (100, 0, 1))
+    refusal = solve(problem(UNITY, undamped, "R1 R2"))
+    assert isinstance(refusal, Refusal)
+    assert refusal.cause == "the denominator of the target has no term in s, that of the stage has"
+    outcome = solve(problem(lossless, undamped, "L1"))
+    assert isinstance(outcome, Solutions)
+
+
+def test_term_that_a_numerator_lacks_is_named() -> None:
+    refusal = solve(problem(UNITY, second_order("all-pass"), "R1 R2", "free"))
+    assert isinstance(refusal, Refusal)
+    assert refusal.cause == "the numerator of the stage has no term in s and s**2, as the target's has"
+
+
+def test_part_without_influence_has_to_be_chosen() -> None:
+    """C2 is in no coefficient."""
+    ring = PolyRing(["R1", "C1", "C2"], QQ)
+    r1, c1, _ = ring.gens
+    stage = TransferFunction(ring, (ring(1),), (ring(1), r1 * c1))
+    refusal = solve(problem(stage, target("low-pass", (100, 1)), "R1 C2"))
+    assert isinstance(refusal, Refusal)
+    assert refusal.groups == (("C2",),)

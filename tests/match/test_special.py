@@ -10,7 +10,7 @@ from sympy.polys.rings import PolyRing
 from symcirc.match.cases import missing_cases
 from symcirc.match.elimination import subresultants
 from symcirc.match.formula import condition_text, equation_text
-from symcirc.match.problem import Refusal, Solutions
+from symcirc.match.problem import Refusal, Refused, Solutions
 from symcirc.match.quantities import plain_quantities
 from symcirc.match.solve import solve
 from symcirc.match.triangular import State, triangular
@@ -191,3 +191,32 @@ def test_case_where_a_pivot_is_zero_is_found() -> None:
     cases: list[State] = [state, *missing_cases(state, quantities, Work())]
     degrees = sorted(max(s.equation.degree(s.unknown) for s in case.steps) for case in cases)
     assert degrees == [1, 2]
+
+
+def test_equations_in_one_unknown_keep_what_they_have_in_common() -> None:
+    """x^3 = a x and x^2 = a together are x^2 = a; with x^2 = b they contradict each other."""
+    quantities = plain_quantities("x y", "a b")
+    x, y, a, b = quantities.ring.gens
+    cubic = (x**2 - a) * (x**2 + 3 * x - b)
+    state = triangular([cubic, (x**2 - a) * (x**2 - x - 1), y**2 - x**3], (0, 1), quantities, Work())
+    assert state is not None
+    assert [step.equation for step in state.steps] == [x**2 - a, x**3 - y**2]
+    assert triangular([x**2 - a, x**2 - b, y**2 - x**3], (0, 1), quantities, Work()) is None
+    assert triangular([x * y - 1, x * y - 2], (0, 1), quantities, Work()) is None
+
+
+def test_way_that_grows_too_long_is_left_and_given_up_where_there_is_no_other() -> None:
+    quantities = plain_quantities("x y z", "a b")
+    x, y, z, a, b = quantities.ring.gens
+    long = (x + y + z + a + b) ** 12 - 7
+    equations = [x * (1 + y + z + a) ** 6 - (y + z + b) ** 6, long, y**2 * z - a]
+    with pytest.raises(Refused, match="too large"):
+        triangular(equations, (0, 1, 2), quantities, Work())
+
+
+def test_equations_that_leave_an_unknown_open_say_which() -> None:
+    quantities = plain_quantities("x y", "a")
+    x, y, a = quantities.ring.gens
+    state = triangular([x * y - a, x**2 * y - a * x], (0, 1), quantities, Work())
+    assert state is not None
+    assert len(state.open) == 1

@@ -55,16 +55,16 @@ def test_small_polynomials_have_the_factors_that_sympy_finds(polynomial: PolyEle
 
 
 def test_large_products_of_sums_without_shared_symbols_are_split() -> None:
-    ring = PolyRing([f"R{k}" for k in range(30)], QQ, lex)
+    ring = PolyRing([f"R{k}" for k in range(21)], QQ, lex)
     chance = random.Random(4)
     sums = []
-    for first in (0, 10, 20):
-        gens = ring.gens[first : first + 10]
+    for first in (0, 7, 14):
+        gens = ring.gens[first : first + 7]
         sums.append(sum(a * b * chance.choice([1, 1, 2]) for k, a in enumerate(gens) for b in gens[k + 1 :]))
     started = time.perf_counter()
     found = factorize(sums[0] * sums[1] * sums[2])
     assert {f for f, _ in found.polynomials} == set(sums)
-    assert time.perf_counter() - started < 20  # 91,125 products
+    assert time.perf_counter() - started < 10  # 9,261 products; measured: 0.2 s
 
 
 def test_an_irreducible_multilinear_polynomial_stays_whole() -> None:
@@ -86,11 +86,9 @@ def test_a_polynomial_with_squares_beyond_the_bounds_is_left_whole_at_once() -> 
 
 def test_a_split_that_is_wrong_is_not_believed(monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(factors, "_classes", lambda *_: [[0, 1], [5, 6]])
-    for polynomial in (
-        R1 * C1 + R1 * C2 + R2 * C1 + 2 * R2 * C2,
-        R1 * C1 + R2 * C2,
-        R1 * C1 + R1 * C2 + R2 * C1,
-    ):
+    as_many_products = R1 * C1 + R1 * C2 + R2 * C1 + 2 * R2 * C2
+    too_few_products = R1 * C1 + R1 * C2 + R2 * C1 + R2 + C1
+    for polynomial in (as_many_products, too_few_products):
         assert factorize(polynomial).polynomials == ((polynomial, 1),)
 
 

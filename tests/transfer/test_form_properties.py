@@ -15,7 +15,7 @@ from sympy.polys.rings import PolyElement, PolyRing
 from symcirc.transfer import arrange, square_root
 from symcirc.transfer.arrange import form_of
 from symcirc.transfer.assemble import assemble
-from symcirc.transfer.form import Divided, Integer, Negative, Product, Root, Sum, Symbol
+from symcirc.transfer.form import Divided, Form, Integer, Negative, Product, Root, Sum, Symbol
 from symcirc.transfer.latex import latex, latex_name
 from symcirc.transfer.residues import FormMismatch, number_of, require_equal, require_square, residues_for
 from symcirc.transfer.text import text
@@ -114,13 +114,12 @@ def test_a_form_that_is_wrong_is_not_handed_out(monkeypatch: pytest.MonkeyPatch)
 
 
 def test_a_root_that_is_wrong_is_not_handed_out(monkeypatch: pytest.MonkeyPatch) -> None:
-    honest = square_root._multiplied
+    honest = square_root._quotient
 
-    def doubled(powers: dict[PolyElement, int], like: Quotient) -> Quotient:
-        quotient = honest(powers, like)
-        return Quotient(2 * quotient.above, quotient.below)
+    def doubled(ring: PolyRing, powers: dict[PolyElement, int]) -> Form:
+        return Product((Integer(2), honest(ring, powers)))
 
-    monkeypatch.setattr(square_root, "_multiplied", doubled)
+    monkeypatch.setattr(square_root, "_quotient", doubled)
     with pytest.raises(FormMismatch):
         square_root.square_root(Quotient(R1, R2), Quotient(ONE, C1), PARTS)
 
@@ -142,9 +141,11 @@ def test_a_form_that_differs_is_told_from_the_quotient(wrong: Divided | Negative
 
 
 def test_the_square_of_a_root_is_told_from_another() -> None:
-    require_square(Divided(Root(Symbol("R1")), Symbol("R2")), R1, R2**2)
+    form = Divided(Root(Symbol("R1")), Symbol("R2"))
+    require_square(form, Quotient(R1, ONE), Quotient(ONE, R2))
+    require_square(form, Quotient(R1, R2**2), Quotient(ONE, ONE))
     with pytest.raises(FormMismatch):
-        require_square(Divided(Root(Symbol("R1")), Symbol("R2")), R1, R2)
+        require_square(form, Quotient(R1, R2), Quotient(ONE, ONE))
 
 
 def test_the_image_of_a_field_with_roots_is_a_homomorphism() -> None:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import random
 from fractions import Fraction
 
 import numpy as np
@@ -149,3 +150,20 @@ def test_a_first_order_pole_is_given_in_rad_per_second_and_in_hertz() -> None:
     assert found.omega == Quotient(R1 + R2, R1 * R2 * C1)
     assert first_order((RING.zero, R1 * C1)) is None
     assert first_order((ONE, R1, C1)) is None
+
+
+def test_the_roots_of_long_sums_are_not_multiplied_out() -> None:
+    ring = PolyRing([f"R{k}" for k in range(1, 21)], QQ, lex)
+    chance = random.Random(3)
+
+    def long_sum() -> PolyElement:
+        return ring.from_dict({tuple(chance.randrange(2) for _ in range(20)): QQ(1) for _ in range(40)})
+
+    coefficients = (long_sum(), long_sum(), long_sum())
+    found = second_order(coefficients, {str(symbol) for symbol in ring.symbols})
+    assert found is not None
+    assert found.q is not None
+    assert len(text(found.q)) < 3 * 40 * 20 * 4
+    values = {str(symbol): Fraction(k + 2, 7) for k, symbol in enumerate(ring.symbols)}
+    a0, a1, a2 = (float(value_at(c, values)) for c in coefficients)
+    assert number(found.q, values) == pytest.approx(math.sqrt(a0 * a2) / a1, rel=1e-9)

@@ -11,11 +11,12 @@ from symcirc.trees.collect import collected
 from symcirc.trees.consistent import assert_consistent, assert_walk_consistent
 from symcirc.trees.count import count
 from symcirc.trees.diagram import diagram
+from symcirc.trees.frontier import TooManyStates
 from symcirc.trees.graphs import two_graphs
 from symcirc.trees.laws import Weight
 from symcirc.trees.order import best_order, by_node, by_part, incidence, widths
 from symcirc.trees.relevance import relevant
-from symcirc.trees.walk import TooManyStates, walk
+from symcirc.trees.walk import walk
 from tests.benchmarks.families import discrete_amplifier, finite_gain_chain, grid, ladder
 from tests.trees.samples import random_case
 
@@ -125,6 +126,13 @@ def test_a_walk_can_be_bounded():
     with pytest.raises(TooManyStates):
         determinants(*grid(6), most_states=100)
     assert determinants(*grid(3), most_states=10_000).roots == determinants(*grid(3)).roots
+
+
+def test_a_hopelessly_wide_frontier_is_refused():
+    graphs = two_graphs(*ladder(300))
+    resistors_first = sorted(range(600), key=lambda number: graphs.elements[number].name)[::-1]
+    with pytest.raises(TooManyStates):
+        walk(graphs, resistors_first)
 
 
 def test_the_answer_does_not_depend_on_the_order():

@@ -147,6 +147,15 @@ def test_a_stage_that_loads_nothing_cancels():
     assert sorted(found.symbols) == ["R1", "R2"]
 
 
+def test_a_long_load_on_an_output_cancels():
+    parts = [part("R1", "in", "m"), part("R2", "m", "out")]
+    for k in range(400):
+        parts.append(part(f"R1{k:03}", f"n{k - 1}" if k else "out", f"n{k}"))
+        parts.append(part(f"C1{k:03}", f"n{k}", GROUND))
+    made = circuit(parts, [opamp("U1", GROUND, "m", "out")])
+    assert len(ratio(made, setup(FROM_INPUT, *GAIN)).idle) == 800
+
+
 def test_a_stage_without_solution_is_not_cancelled():
     parts = [part("R1", "in", "m"), part("R2", "m", "out"), part("R3", "x", "z"), part("R4", "out", "y")]
     made = circuit(

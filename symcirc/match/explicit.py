@@ -1,4 +1,4 @@
-"""The formula of a part from the equation that gives it."""
+"""The explicit formula of a part from the equation of first or second degree that gives it."""
 
 from __future__ import annotations
 
@@ -9,7 +9,7 @@ import sympy
 from sympy.polys.rings import PolyElement
 
 from symcirc.match.decimals import fraction_near, reals
-from symcirc.match.forms import Form
+from symcirc.match.forms import Form, discriminant
 from symcirc.match.problem import Root
 from symcirc.match.products import (
     MOST_FACTORED_TERMS,
@@ -78,9 +78,9 @@ def quadratic_formula(root: Quadratic, quantities: Quantities) -> sympy.Expr:
     elif not b:
         value = side * root_expression(factored(-c, quantities) / factored(a, quantities), 2, quantities)
     elif quantities.sign(a) is None and quantities.sign(b) == side:
-        value = 1 / _quotient(-b, -side, root.discriminant, 2 * c, quantities)
+        value = 1 / _quotient(-b, -side, discriminant(root.form), 2 * c, quantities)
     else:
-        value = _quotient(-b, side, root.discriminant, 2 * a, quantities)
+        value = _quotient(-b, side, discriminant(root.form), 2 * a, quantities)
     return value if root.form.power == 1 else value ** sympy.Rational(1, root.form.power)
 
 
