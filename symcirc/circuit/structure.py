@@ -225,9 +225,15 @@ def _no_feedback(circuit: Circuit, setup: Setup) -> Complaint | None:
 def _influence(circuit: Circuit, setup: Setup) -> nx.DiGraph:
     """Return which node's voltage moves which: through parts both ways, through devices from input to output."""
     graph: nx.DiGraph = nx.DiGraph()
-    pinned = {GROUND, *_driven_nodes(setup)} if not isinstance(setup.drive, CurrentDrive) else {GROUND}
-    pinned |= {node for pair in setup.shorts for node in pair}
+    drive = setup.drive
+    pairs = [*setup.shorts, *([(drive.plus, drive.minus)] if isinstance(drive, VoltageDrive) else [])]
+    pinned = {GROUND, *(pair[0] for pair in pairs if pair[1] == GROUND)}
+    if isinstance(drive, LoopDrive):
+        pinned.add(drive.node)
     outputs = {d.terminals["drives"][0] for d in circuit.devices if d.kind == "opamp"}
+    for plus, minus in pairs:  # between two nodes a source holds a difference, and moves both together
+        if minus != GROUND:
+            graph.add_edges_from([(plus, minus), (minus, plus)])
     for part in circuit.parts:
         for here, there in ((part.first, part.second), (part.second, part.first)):
             if there not in pinned | outputs:

@@ -181,5 +181,7 @@ class Tableau:
                 self._sum(self._across(plus, minus))
                 self._right[row] = 0 if number else 1
             for node, sign in ((plus, 1), (minus, -1)):
+                if number and node in pairs[0]:
+                    continue  # at its own nodes the live drive alone delivers
                 delivered = self._delivered.setdefault(node, {})
                 delivered[current] = delivered.get(current, 0) + sign
