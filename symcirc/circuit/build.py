@@ -124,7 +124,6 @@ def _over_and_under(circuit: Circuit, ask: Ask) -> tuple[Quantity, Quantity]:
         amplifier = _amplifier(circuit, ask.loop)
         (plus,), (minus,), (out,) = (amplifier.terminals[role] for role in ("plus", "minus", "drives"))
         return Voltage(plus, minus, ask.place), Voltage(out, GROUND, ask.place)
-    assert (
-        ask.over is not None and ask.under is not None
-    )  # the sheet's reader gives both where there is no loop
+    assert ask.over is not None  # the sheet's reader gives both where there is no loop
+    assert ask.under is not None
     return ask.over, ask.under

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable
 
 from sympy.polys.domains import ZZ
 from sympy.polys.orderings import lex

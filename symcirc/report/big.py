@@ -16,9 +16,8 @@ from symcirc.transfer.ties import expression_in, ring_for
 from symcirc.trees.expand import symbols
 from symcirc.trees.named import Named, named_coefficients, named_polynomials
 
-
-#: A sequence that would be longer than this by powers of s is written with s inside, which is shorter by the order.
-LONGEST = 2_000
+#: A sequence that may be longer than this by powers of s is written with s inside, which is shorter by the order.
+LONGEST = 5_000
 
 
 @dataclass(frozen=True)
@@ -45,11 +44,15 @@ def sequence_of(derivation: Derivation, answer: BigAnswer) -> Sequence:
     ties = ties_of(derivation.ties, needed)
     letter = _free_letter(derivation)
     holds_s = any(n.text == "s" for tie in ties.values() for n in names(tie))
-    if not holds_s:
+    if not holds_s and answer.diagram.size * _order(answer) <= LONGEST:
         named = named_coefficients(answer.diagram, lambda k: f"{letter}{k}")
-        if len(named.definitions) <= LONGEST:
-            return _sequence(ties, named, answer, in_s=False)
+        return _sequence(ties, named, answer, in_s=False)
     return _sequence(ties, named_polynomials(answer.diagram, lambda k: f"{letter}{k}"), answer, in_s=True)
+
+
+def _order(answer: BigAnswer) -> int:
+    """Return how many powers of s there can be: one for each part that brings one."""
+    return sum(any(weight.s_power for weight in level.weights) for level in answer.diagram.levels)
 
 
 def _sequence(ties: Mapping[str, Expression], named: Named, answer: BigAnswer, *, in_s: bool) -> Sequence:

@@ -7,8 +7,8 @@ from collections.abc import Iterable, Iterator
 from symcirc.derivation import Answer, BigAnswer, Derivation
 from symcirc.nodal import build_system
 from symcirc.nodal.text import equation_latex, equation_text
-from symcirc.report.facts import Fact, facts_of
 from symcirc.report.big import sequence_of
+from symcirc.report.facts import Fact, facts_of
 from symcirc.report.numbers import expanded_answers, numbers_for
 from symcirc.report.quantities import ask_text
 from symcirc.transfer.evaluate import coefficients

@@ -27,6 +27,8 @@ TOLERANCE = 1e-9
 WORST_CONDITION = 1e5
 #: The same for a circuit too big for digits beyond floats.
 BIG_CONDITION = 1e10
+#: Beyond so many nodes one point must do: the solve takes seconds.
+MANY_NODES = 400
 MOST_TRIES = 40
 #: Both values smaller than this count as zero: a function that is zero comes out of the solve as rounding.
 SMALLEST = 1e-12
@@ -134,6 +136,7 @@ def confirm_values(
     """
     generator = random.Random(f"{setup.ask} {len(circuit.parts)}")
     free = sorted(_free_symbols(circuit, ties))
+    points = POINTS if len(circuit.graph) <= MANY_NODES else 1
     departures: list[float] = []
     for _ in range(MOST_TRIES):
         values, s = _random_point(free, generator)
@@ -143,8 +146,8 @@ def confirm_values(
         known = complete(values, ties, s)
         here = value(known, s) * _loop_factor(setup, known)
         departures.append(_departure(setup, here, there, max(TOLERANCE, 1e-14 * condition)))
-        if len(departures) == POINTS:
-            return Evidence(POINTS, max(departures))
+        if len(departures) == points:
+            return Evidence(points, max(departures))
     raise InternalFault(f"no point was found at which {setup.ask} could be confirmed by a numeric solve")
 
 
