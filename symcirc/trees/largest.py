@@ -17,6 +17,9 @@ from itertools import count, islice
 
 from symcirc.trees.diagram import Diagram
 
+#: Logarithms that agree to so many decimals are a tie. Of ties the longest way is followed first: circuits with equal
+#: stages have so many that going abreast would never end.
+TIE_DIGITS = 9
 #: For every power of s that is left, the logarithm of the largest product from a state to the end.
 _Best = dict[int, float]
 #: Choices taken, the last one first: (level, choice, all before), or None.
@@ -58,7 +61,8 @@ def largest(
     """
     exact = {level.symbol: Fraction(values[level.symbol]) for level in diagram.levels if level.symbol}
     search = _Search(diagram, exact)
-    return [list(islice(search.products(root, power), most)) for power in search.powers(root)]
+    found = [list(islice(search.products(root, power), most)) for power in search.powers(root)]
+    return [sorted(products, key=lambda product: -abs(product.value)) for products in found]
 
 
 class _Search:
@@ -92,13 +96,14 @@ class _Search:
     def products(self, root: int, power: int) -> Iterator[Product]:
         """Yield the products of one coefficient, the largest first."""
         tie = count()
-        heap: list[tuple[float, int, int, int, int, float, int, _Path]] = []
+        heap: list[tuple[float, int, int, int, int, int, float, int, _Path]] = []
 
         def offer(level: int, code: int, left: int, before: float, sign: int, path: _Path) -> None:
             best = self._best[level][abs(code) - 1].get(left, -math.inf) if code else -math.inf
             if before + best > -math.inf:
                 entry = (
-                    -before - best,
+                    -round(before + best, TIE_DIGITS),
+                    -level,
                     next(tie),
                     level,
                     abs(code) - 1,
@@ -111,7 +116,7 @@ class _Search:
 
         offer(0, root, power, 0.0, 1, None)
         while heap:
-            _, _, number, state, left, before, sign, path = heappop(heap)
+            _, _, _, number, state, left, before, sign, path = heappop(heap)
             if number == len(self._levels):
                 yield self._product(sign * self._ends[state], path)
                 continue
