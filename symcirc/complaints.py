@@ -7,8 +7,18 @@ shown. An :class:`InternalFault` is the program's own and asks to be reported (e
 from __future__ import annotations
 
 import difflib
-from collections.abc import Iterable
+import re
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass, field
+from functools import cached_property
+from typing import TypeVar
+
+T = TypeVar("T")
+
+#: A word longer than this is shown by its beginning only.
+LONGEST_WORD = 60
+#: Among more words than this none is offered: the search would take too long.
+MOST_OFFERED = 2_000
 
 
 @dataclass(frozen=True)
@@ -18,10 +28,14 @@ class Source:
     file: str
     text: str
 
+    @cached_property
+    def lines(self) -> tuple[str, ...]:
+        """The lines without their line ends."""
+        return tuple(line.rstrip("\r") for line in self.text.split("\n"))
+
     def line(self, number: int) -> str:
         """Return line ``number`` (counted from 1) without its line end; empty where there is none."""
-        lines = self.text.split("\n")
-        return lines[number - 1].rstrip("\r") if 0 < number <= len(lines) else ""
+        return self.lines[number - 1] if 0 < number <= len(self.lines) else ""
 
 
 @dataclass(frozen=True, order=True)
@@ -53,14 +67,15 @@ class Place:
 class Complaint(Exception):
     """Something in the user's text cannot be used.
 
-    ``cause`` says in one sentence what is wrong, ``mend`` in one what would mend it.
+    ``cause`` says in one sentence what is wrong, ``mend`` in one what would mend it; a word of a million
+    characters is cut short in both.
     """
 
     def __init__(self, place: Place, cause: str, mend: str) -> None:
-        super().__init__(cause)
         self.place = place
-        self.cause = cause
-        self.mend = mend
+        self.cause = _clipped(cause)
+        self.mend = _clipped(mend)
+        super().__init__(self.cause)
 
     def __str__(self) -> str:
         where = f"{self.place.source.file}:{self.place.line}:{self.place.column}"
@@ -75,6 +90,30 @@ class Complaint(Exception):
             "message": self.cause,
             "help": self.mend,
         }
+
+
+def _clipped(sentence: str) -> str:
+    return re.sub(rf"(\S{{{LONGEST_WORD}}})\S+", r"\1...", sentence)
+
+
+class Complaints:
+    """Gathers complaints of steps that do not need each other, so that the first in the file can be shown."""
+
+    def __init__(self) -> None:
+        self._found: list[Complaint] = []
+
+    def attempt(self, step: Callable[[], T]) -> T | None:
+        """Return what a step returns, or None where it raises a complaint, which is kept."""
+        try:
+            return step()
+        except Complaint as complaint:
+            self._found.append(complaint)
+            return None
+
+    def raise_first(self) -> None:
+        """Raise the gathered complaint that stands first in the file, if there is one."""
+        if self._found:
+            raise min(self._found, key=lambda complaint: complaint.place)
 
 
 @dataclass(frozen=True)
@@ -105,12 +144,29 @@ def nearest(word: str, known: Iterable[str]) -> str:
     >>> nearest("zzz", ["R1"])
     ''
     """
-    candidates = sorted(set(known))
-    folded = [c for c in candidates if c.lower() == word.lower() and c != word]
-    close = folded or difflib.get_close_matches(word, candidates, n=3, cutoff=0.6)
-    if not close:
+    candidates = sorted(set(known) - {word})
+    if len(candidates) > MOST_OFFERED or len(word) > LONGEST_WORD:
         return ""
-    return "did you mean " + " or ".join(sorted(close)) + "?"
+    folded = [c for c in candidates if c.lower() == word.lower()]
+    close = folded or _closest(word, candidates)
+    return f"did you mean {listed(sorted(close), 'or')}?" if close else ""
+
+
+def _closest(word: str, candidates: list[str]) -> list[str]:
+    cutoff = 0.6 if len(word) > 2 else 0.5  # R1 for R2
+    close = difflib.get_close_matches(word, candidates, n=3, cutoff=cutoff)
+    likeness = {c: difflib.SequenceMatcher(None, c, word).ratio() for c in close}
+    return [c for c in close if likeness[c] > max(likeness.values()) - 0.1]
+
+
+def choices(known: Iterable[str]) -> str:
+    """Return a phrase that says which words could be used, a dozen of them at most.
+
+    >>> choices(["H"]), choices(["R1", "R2"])
+    ('use H', 'use R1 or R2')
+    """
+    words = list(known)
+    return f"use {listed(words, 'or')}" if len(words) < 13 else f"use one of {', '.join(words[:12])}, ..."
 
 
 def listed(words: Iterable[str], last: str = "and") -> str:

@@ -13,8 +13,8 @@ if TYPE_CHECKING:
 def grammar_folder() -> Path:
     """Return the folder of the ``.lark`` files.
 
-    A wheel carries them as ``symcirc/grammars``; a clone, installed editable or not at all, has them beside the
-    package.
+    A wheel carries them as ``symcirc/grammars``; a clone, installed editable or not at all, has them beside
+    the package.
     """
     package = Path(__file__).parent
     inside = package / "grammars"
@@ -23,13 +23,12 @@ def grammar_folder() -> Path:
 
 @cache
 def parser(name: str) -> Lark:
-    """Return the LALR parser of ``name.lark``, built once a process (50 ms), with places on every rule."""
+    """Return the LALR parser of ``name.lark``, built once a process (50 ms)."""
     from lark import Lark
 
     return Lark.open(
         str(grammar_folder() / f"{name}.lark"),
         parser="lalr",
         lexer="contextual",
-        propagate_positions=True,
         maybe_placeholders=True,
     )

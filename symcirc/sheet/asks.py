@@ -4,33 +4,31 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
-from symcirc.complaints import Complaint, Place, nearest
+from symcirc.complaints import Complaint, Place, choices, nearest
 from symcirc.sheet import statements as st
+from symcirc.sheet.expand import Flat, refuse_port
 from symcirc.sheet.expression import Name
-from symcirc.sheet.fixes import check_name
 from symcirc.sheet.model import (
     GROUND,
     Ask,
     Dead,
-    Device,
     NodeCurrent,
-    Part,
     PartCurrent,
     Quantity,
     Symbol,
     Voltage,
 )
+from symcirc.sheet.reserved import check_name
 
 
 class Lookup:
     """The names that a quantity may hold."""
 
-    def __init__(
-        self, nodes: Mapping[str, Place], parts: tuple[Part, ...], devices: tuple[Device, ...]
-    ) -> None:
-        self.nodes = nodes
-        self.parts = {part.name for part in parts}
-        self.devices = {device.name: device for device in devices}
+    def __init__(self, flat: Flat) -> None:
+        self.nodes = {name: place for name, place in flat.node_places.items() if name != GROUND}
+        self.parts = {part.name for part in flat.parts}
+        self.devices = {device.name: device for device in flat.devices}
+        self.port_names = flat.port_names
 
     def node(self, text: str, place: Place) -> str:
         """Return the node of that name, which must be there and not be ``gnd``."""
@@ -40,24 +38,28 @@ class Lookup:
                 "`gnd` is the reference node: its voltage is 0 and nothing can drive it",
                 "name another node",
             )
+        if text in self.nodes:
+            return text
         if text in self.parts or text in self.devices:
             raise Complaint(place, f"`{text}` is a part, and a node is meant here", "name one of its nodes")
-        if text not in self.nodes:
-            hint = nearest(text, [n for n in self.nodes if n != GROUND])
-            known = ", ".join(sorted(n for n in self.nodes if n != GROUND)[:12])
-            raise Complaint(place, f"there is no node `{text}`", hint or f"the nodes are: {known}")
-        return text
+        if text in self.port_names:
+            raise refuse_port(text, self.port_names[text], place)
+        hint = nearest(text, self.nodes)
+        raise Complaint(place, f"there is no node `{text}`", hint or self._known_nodes())
+
+    def _known_nodes(self) -> str:
+        return choices(sorted(self.nodes)) if self.nodes else "draw the circuit, as in: in -- R1 -- out"
 
     def quantity(self, name: Name) -> Quantity:
         """Return the quantity that ``V_n`` or ``I_n`` names."""
-        text = name.text[2:]
-        if name.text.startswith("V_"):
-            return Voltage(self.node(text, name.place), GROUND, name.place)
-        if text in self.parts or text in self.devices:
+        prefix, text = name.text[:2], name.text[2:]
+        if prefix == "I_" and (text in self.parts or text in self.devices):
             return PartCurrent(text, name.place)
-        if text in self.nodes:
+        if prefix == "V_":
+            return Voltage(self.node(text, name.place), GROUND, name.place)
+        if text in self.nodes or text in self.port_names or text == GROUND:
             return NodeCurrent(self.node(text, name.place), name.place)
-        hint = nearest(text, [*self.parts, *self.devices, *(n for n in self.nodes if n != GROUND)])
+        hint = nearest(text, [*self.parts, *self.devices, *self.nodes])
         raise Complaint(
             name.place,
             f"there is no part or node `{text}`",
@@ -65,13 +67,11 @@ class Lookup:
         )
 
 
-def read_asks(
-    lines: list[st.AskLine], lookup: Lookup, symbols: Mapping[str, Symbol], declared: set[str]
-) -> tuple[Ask, ...]:
-    """Return the asks of a sheet; ``declared`` are the devices' parameters that have a value or a symbol.
+def read_asks(lines: list[st.AskLine], lookup: Lookup, symbols: Mapping[str, Symbol]) -> tuple[Ask, ...]:
+    """Return the asks of a sheet.
 
-    Raises Complaint for a name used twice, an unknown node, a drive that is none, and a loop gain without what it
-    needs.
+    Raises Complaint for a name used twice, an unknown node, a drive that is none, and a loop gain without
+    what it needs.
     """
     asks: dict[str, Ask] = {}
     for line in lines:
@@ -88,16 +88,17 @@ def read_asks(
             raise Complaint(
                 name.place, f"`{name.text}` is a part or a parameter already", "give the ask another name"
             )
-        asks[name.text] = _read_loop(line, lookup, declared) if line.loop else _read_ratio(line, lookup)
+        match line.what:
+            case st.Loop(amplifier=amplifier):
+                asks[name.text] = _read_loop(line, amplifier, lookup, symbols)
+            case st.Ratio():
+                asks[name.text] = _read_ratio(line, line.what, lookup)
     return tuple(asks.values())
 
 
-def _read_ratio(line: st.AskLine, lookup: Lookup) -> Ask:
-    assert line.over is not None and line.under is not None
-    over, under = _read_quantity(line.over, lookup), _read_quantity(line.under, lookup)
-    if len(line.driven_at) > 1:
-        raise Complaint(line.driven_at[1].place, "`driven at` stands twice", "keep one of the two")
-    driven = lookup.node(line.driven_at[0].text, line.driven_at[0].place) if line.driven_at else None
+def _read_ratio(line: st.AskLine, ratio: st.Ratio, lookup: Lookup) -> Ask:
+    over, under = _read_quantity(ratio.over, lookup), _read_quantity(ratio.under, lookup)
+    driven = lookup.node(line.driven_at.text, line.driven_at.place) if line.driven_at else None
     if isinstance(under, PartCurrent) and driven is None:
         raise Complaint(
             under.place,
@@ -131,36 +132,33 @@ def _dead(line: st.AskLine, lookup: Lookup) -> tuple[Dead, ...]:
                 "a drive can only be set to 0 here",
                 f"write with {name.text} = 0, or leave it out",
             )
-        dead.append(Dead(name.text[0], lookup.node(name.text[2:], name.place), condition.place))
+        node = lookup.node(name.text[2:], name.place)
+        dead.append(Dead(name.text[0], node, condition.place))
     return tuple(dead)
 
 
-def _read_loop(line: st.AskLine, lookup: Lookup, declared: set[str]) -> Ask:
-    assert line.loop is not None
-    name = line.loop
+def _read_loop(line: st.AskLine, name: Name, lookup: Lookup, symbols: Mapping[str, Symbol]) -> Ask:
     device = lookup.devices.get(name.text)
-    amplifiers = [d.name for d in lookup.devices.values() if d.kind == "opamp"]
     if device is None or device.kind != "opamp":
-        hint = nearest(name.text, amplifiers) or (
-            "the amplifiers are: " + ", ".join(amplifiers) if amplifiers else ""
-        )
+        amplifiers = [d.name for d in lookup.devices.values() if d.kind == "opamp"]
+        known = choices(amplifiers) if amplifiers else "add one, or ask a ratio"
         raise Complaint(
-            name.place, f"there is no amplifier `{name.text}`", hint or "loop(...) needs an opamp"
+            name.place, f"there is no opamp `{name.text}`", nearest(name.text, amplifiers) or known
         )
-    if not declared & {f"{name.text}_gain", f"{name.text}_gbw"}:
+    if not symbols.keys() & {f"{name.text}_gain", f"{name.text}_gbw"}:
         raise Complaint(
             name.place,
             f"the loop gain of `{name.text}` needs its gain or its gbw",
-            f"add to its line: gain 100 dB, or gbw 1 MHz (or: choose {name.text}_gain)",
+            f"add to its line gain 100 dB or gbw 1 MHz, or keep a symbol: choose {name.text}_gain",
         )
     if line.driven_at:
         raise Complaint(
-            line.driven_at[0].place, "a loop gain is driven at the amplifier's output", "remove driven at"
+            line.driven_at.place, "a loop gain is driven at the amplifier's output", "remove `driven at`"
         )
     if not line.conditions:
         raise Complaint(
-            line.place,
+            name.place,
             "a loop gain must say what stands at the input, as the source's impedance matters",
-            "add: with V_in = 0 (an ideal source) or with I_in = 0 (open)",
+            "add `with V_in = 0` for an ideal source, or `with I_in = 0` for an open input",
         )
     return Ask(line.name.text, None, None, name.text, _dead(line, lookup), None, line.name.place)

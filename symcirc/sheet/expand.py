@@ -1,7 +1,7 @@
 """Blocks placed: from statements to flat parts, devices and settings.
 
-Inside a block's use ``S1`` every name gets the prefix ``S1_`` in formulas and ``S1.`` in sentences, ports become
-the nodes that they are joined to, and ``gnd`` stays what it is.
+Inside a block's use ``S1`` every name gets the prefix ``S1_`` in formulas and ``S1.`` in sentences, ports
+become the nodes that they are joined to, and ``gnd`` stays what it is.
 """
 
 from __future__ import annotations
@@ -9,20 +9,20 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 
-from symcirc.complaints import Complaint, Place, nearest
+from symcirc.complaints import Complaint, Place, Remark
 from symcirc.sheet import statements as st
+from symcirc.sheet.blocks import check_size, collect_blocks, find_block
+from symcirc.sheet.bounds import LONGEST_NAME
+from symcirc.sheet.chains import check_chain, odd_node
 from symcirc.sheet.devices import build_device
 from symcirc.sheet.expression import Name
 from symcirc.sheet.model import GROUND, Device, Part, Value
-
-PART_KINDS = "RCLZY"
-#: More parts than this are refused before they are made (uses of uses grow exponentially).
-MOST_PARTS = 50_000
+from symcirc.sheet.reserved import check_name
 
 
 @dataclass(frozen=True)
 class Scope:
-    """Where a statement stands: the prefixes of its names, and the nodes that its block's ports are joined to."""
+    """Where a statement stands: the prefixes of its names, and the nodes that its block's ports are."""
 
     prefix: str
     label: str
@@ -40,215 +40,169 @@ TOP = Scope("", "", {})
 
 @dataclass(frozen=True)
 class FlatSetting:
-    """A setting with its flat name; ``value``'s names are as written, in ``scope``."""
+    """A setting where it stands: its name, and the names in its value, are as written in ``scope``."""
 
-    name: str
+    name: Name
     value: Value
     scope: Scope
-    place: Place
 
 
 @dataclass
 class Flat:
-    """What the expansion gathers."""
+    """What the expansion gathers.
+
+    ``node_owners`` has for every node the innermost scope that names it; ``port_names`` has what a port would
+    be called from outside (``S1_p``), and the node that it is.
+    """
 
     parts: list[Part] = field(default_factory=list)
     devices: list[Device] = field(default_factory=list)
     settings: list[FlatSetting] = field(default_factory=list)
     node_labels: dict[str, str] = field(default_factory=dict)
     node_places: dict[str, Place] = field(default_factory=dict)
+    node_owners: dict[str, Scope] = field(default_factory=dict)
+    port_names: dict[str, str] = field(default_factory=dict)
     port_nodes: set[str] = field(default_factory=set)
     used_blocks: set[str] = field(default_factory=set)
     places: dict[str, Place] = field(default_factory=dict)
+    remarks: list[Remark] = field(default_factory=list)
 
 
 def expand(statements: Iterable[st.Statement]) -> Flat:
     """Return the flat circuit of a sheet's statements.
 
-    Raises Complaint for a part that stands twice, a block that is unknown, uses itself or is joined to the wrong
-    number of nodes, and for more than 50,000 parts.
+    Raises Complaint for a part that stands twice, a block that is unknown, uses itself or is joined to the
+    wrong number of nodes, and for more than 50,000 parts and fixes.
     """
     statements = tuple(statements)
-    blocks = _blocks(statements)
-    _check_size(statements, blocks)
+    blocks = collect_blocks(statements)
+    circuit = [s for s in statements if isinstance(s, st.CircuitStatement)]
+    check_size(circuit, blocks)
     flat = Flat()
-    waiting: list[tuple[st.CircuitStatement, Scope]] = [(s, TOP) for s in _circuit_part(statements)][::-1]
-    while waiting:
-        statement, scope = waiting.pop()
-        match statement:
-            case st.Chain():
-                _add_chain(flat, statement, scope)
-            case st.DeviceLine():
-                _add_device(flat, statement, scope)
-            case st.FixLine(settings=settings):
-                flat.settings += [
-                    FlatSetting(scope.prefix + x.name.text, x.value, scope, x.name.place) for x in settings
-                ]
-            case st.UseLine():
-                inner = _enter(flat, statement, scope, blocks)
-                waiting.extend((s, inner) for s in reversed(blocks[statement.block.text].body))
+    _place(flat, circuit, TOP, blocks)
+    for name in flat.port_names.keys() & flat.node_places.keys():
+        raise refuse_port(name, flat.port_names[name], flat.node_places[name])
+    for block in blocks.values():
+        if block.name.text not in flat.used_blocks:  # its slips are found although nothing uses it
+            aside = Flat()
+            _place(aside, block.body, Scope("", "", {port.text: port.text for port in block.ports}), blocks)
+            flat.used_blocks |= aside.used_blocks
+            flat.remarks.append(Remark(block.name.place, f"block `{block.name.text}` is never used"))
     return flat
 
 
-def _circuit_part(statements: Iterable[st.Statement]) -> list[st.CircuitStatement]:
-    kinds = st.Chain | st.DeviceLine | st.FixLine | st.UseLine
-    return [s for s in statements if isinstance(s, kinds)]
+def _place(
+    flat: Flat, body: Iterable[st.CircuitStatement], scope: Scope, blocks: Mapping[str, st.Block]
+) -> None:
+    waiting = [(statement, scope) for statement in body][::-1]
+    while waiting:
+        statement, where = waiting.pop()
+        match statement:
+            case st.Chain():
+                _add_chain(flat, statement, where)
+            case st.DeviceLine():
+                _add_device(flat, statement, where)
+            case st.FixLine(settings=settings):
+                flat.settings += [FlatSetting(x.name, x.value, where) for x in settings]
+            case st.UseLine():
+                block = find_block(statement, blocks)
+                inner = _enter(flat, statement, where, block)
+                waiting += [(s, inner) for s in reversed(block.body)]
 
 
-def _blocks(statements: Iterable[st.Statement]) -> dict[str, st.Block]:
-    blocks: dict[str, st.Block] = {}
-    for block in (s for s in statements if isinstance(s, st.Block)):
-        name = block.name
-        if name.text in blocks:
-            raise Complaint(
-                name.place, f"block `{name.text}` is there already", "give this block another name"
-            )
-        seen: set[str] = set()
-        for port in block.ports:
-            if port.text == GROUND or port.text in seen:
-                what = (
-                    "gnd is the same node everywhere" if port.text == GROUND else "this port is there already"
-                )
-                raise Complaint(port.place, what, "leave it out of the ports")
-            seen.add(port.text)
-        blocks[name.text] = block
-    return blocks
-
-
-def _check_size(statements: Iterable[st.Statement], blocks: Mapping[str, st.Block]) -> None:
-    """Count what the uses will make, before it is made; find a block that uses itself on the way."""
-    sizes: dict[str, int] = {}
-    for block in blocks.values():
-        _size_of(block, blocks, sizes)
-    total = 0
-    for statement in _circuit_part(statements):
-        total += _statement_size(statement, sizes)
-        if total > MOST_PARTS:
-            raise Complaint(
-                statement.place,
-                f"the circuit has more than {MOST_PARTS:,} parts",
-                "ask about a smaller piece of it",
-            )
-
-
-def _size_of(block: st.Block, blocks: Mapping[str, st.Block], sizes: dict[str, int]) -> None:
-    path: list[tuple[st.Block, int]] = [(block, 0)]
-    open_names = {block.name.text}
-    while path:
-        current, position = path.pop()
-        uses = [s for s in current.body if isinstance(s, st.UseLine)]
-        while position < len(uses) and uses[position].block.text in sizes:
-            position += 1
-        if position == len(uses):
-            sizes[current.name.text] = min(
-                sum(_statement_size(s, sizes) for s in current.body), 2 * MOST_PARTS
-            )
-            open_names.discard(current.name.text)
-            continue
-        use = uses[position]
-        inner = _find_block(use, blocks)
-        if inner.name.text in open_names:
-            raise Complaint(
-                use.block.place,
-                f"block `{inner.name.text}` uses itself",
-                "a block may use other blocks, not itself",
-            )
-        open_names.add(inner.name.text)
-        path += [(current, position), (inner, 0)]
-
-
-def _statement_size(statement: st.CircuitStatement, sizes: Mapping[str, int]) -> int:
-    match statement:
-        case st.Chain(words=words):
-            return len(words) // 2
-        case st.UseLine(block=block):
-            return 1 + sizes.get(block.text, 0)
-        case _:
-            return 1
-
-
-def _find_block(use: st.UseLine, blocks: Mapping[str, st.Block]) -> st.Block:
-    block = blocks.get(use.block.text)
-    if block is None:
-        hint = nearest(use.block.text, blocks)
-        raise Complaint(
-            use.block.place,
-            f"there is no block `{use.block.text}`",
-            hint or "define it with `block NAME (port, ...)`, its lines, and `end`",
-        )
-    return block
-
-
-def _enter(flat: Flat, use: st.UseLine, scope: Scope, blocks: Mapping[str, st.Block]) -> Scope:
-    block = _find_block(use, blocks)
+def _enter(flat: Flat, use: st.UseLine, scope: Scope, block: st.Block) -> Scope:
     if len(use.nodes) != len(block.ports):
         ports = ", ".join(p.text for p in block.ports)
         raise Complaint(
-            use.place,
-            f"block `{block.name.text}` has {len(block.ports)} ports, and {len(use.nodes)} nodes are given",
+            use.nodes[min(len(block.ports), len(use.nodes) - 1)].place,
+            f"block `{block.name.text}` has {_counted(len(block.ports), 'port')}, "
+            f"and {_counted(len(use.nodes), 'node')} stand here",
             f"give one node for each of ({ports})",
         )
-    name = scope.prefix + use.name.text
-    _take_name(flat, name, scope.label + use.name.text, use.name.place)
+    name, label = _take_name(flat, use.name, scope)
+    if len(name) > LONGEST_NAME:
+        raise Complaint(
+            use.name.place,
+            f"the names inside `{label[:20]}...` grow beyond {LONGEST_NAME} characters",
+            "use shorter names, or fewer blocks in blocks",
+        )
     flat.used_blocks.add(block.name.text)
     nodes = [_node(flat, node, scope) for node in use.nodes]
     flat.port_nodes.update(nodes)
     joined = {port.text: node for port, node in zip(block.ports, nodes, strict=True)}
-    return Scope(name + "_", scope.label + use.name.text + ".", joined)
+    flat.port_names |= {f"{name}_{port}": node for port, node in joined.items()}
+    return Scope(name + "_", label + ".", joined)
 
 
-def _take_name(flat: Flat, name: str, label: str, place: Place) -> None:
+def refuse_port(name: str, node: str, place: Place) -> Complaint:
+    """Return the complaint about a port that is named as if it were an inner node."""
+    return Complaint(
+        place, f"`{name}` would be a port of a block, and a port is the node outside", f"write {node}"
+    )
+
+
+def _counted(number: int, thing: str) -> str:
+    return f"{number} {thing}" + ("" if number == 1 else "s")
+
+
+def _take_name(flat: Flat, word: Name, scope: Scope) -> tuple[str, str]:
+    """Return the flat name and the label of a part, a device or a use; raises Complaint where it is taken."""
+    check_name(word.text, word.place)
+    name, label = scope.prefix + word.text, scope.label + word.text
     if name in flat.places:
-        first = flat.places[name]
         raise Complaint(
-            place,
-            f"`{label}` stands twice: it is on line {first.line} already",
+            word.place,
+            f"`{label}` stands twice: it is on line {flat.places[name].line} already",
             "give one of the two another name; a part stands in exactly one place",
         )
-    flat.places[name] = place
+    flat.places[name] = word.place
+    return name, label
 
 
 def _node(flat: Flat, name: Name, scope: Scope) -> str:
+    """Return the flat name of a node and note it.
+
+    An outer scope may name an inner node (``S1_a``); two scopes of which neither holds the other may not.
+    """
     node = scope.node(name.text)
-    if node not in flat.node_places:
-        flat.node_places[node] = name.place
-        inner = name.text not in scope.ports and node != GROUND
-        flat.node_labels[node] = scope.label + name.text if inner else flat.node_labels.get(node, node)
+    if node == GROUND or name.text in scope.ports:
+        flat.node_places.setdefault(node, name.place)
+        flat.node_labels.setdefault(node, node)
+        return node
+    owner = flat.node_owners.setdefault(node, scope)
+    if owner is not scope and scope.label.startswith(owner.label):
+        flat.node_owners[node] = scope
+    elif not owner.label.startswith(scope.label):
+        raise Complaint(
+            name.place,
+            f"node `{scope.label}{name.text}` and node `{flat.node_labels[node]}` have one name, {node}",
+            "give one of the two another name",
+        )
+    if flat.node_owners[node] is scope:
+        flat.node_labels[node] = scope.label + name.text
+    flat.node_places.setdefault(node, name.place)
     return node
 
 
 def _add_chain(flat: Flat, chain: st.Chain, scope: Scope) -> None:
     words = chain.words
-    if len(words) % 2 == 0:
-        last = words[-1]
-        raise Complaint(
-            last.place,
-            f"the chain ends on the part `{last.text}`",
-            "a chain begins and ends on a node: add `-- node`, or continue it on the next line with `--`",
-        )
+    check_chain(words)
     for first, part, second in zip(words[0::2], words[1::2], words[2::2], strict=False):
-        if part.text[0] not in PART_KINDS:
-            raise Complaint(
-                part.place,
-                f"`{part.text}` stands where a part stands, and its first letter is none of R, C, L, Z, Y",
-                "name the part by its kind (R1, C1, ...), or put one between two nodes: node -- part -- node",
-            )
-        name = scope.prefix + part.text
-        label = scope.label + part.text
-        _take_name(flat, name, label, part.place)
+        name, label = _take_name(flat, part, scope)
         nodes = _node(flat, first, scope), _node(flat, second, scope)
         if nodes[0] == nodes[1]:
             raise Complaint(
                 part.place,
-                f"both ends of `{label}` are on node `{nodes[0]}`",
+                f"both ends of `{label}` are on node `{flat.node_labels[nodes[0]]}`",
                 "join its ends to two different nodes",
             )
         flat.parts.append(Part(name, label, part.text[0], *nodes, part.place))
+    flat.remarks += odd_node(words)
 
 
 def _add_device(flat: Flat, line: st.DeviceLine, scope: Scope) -> None:
-    name, label = scope.prefix + line.name.text, scope.label + line.name.text
-    _take_name(flat, name, label, line.name.place)
+    name, label = _take_name(flat, line.name, scope)
     flat.devices.append(build_device(line, name, label, lambda node: _node(flat, node, scope)))
-    for word, value in line.parameters:
-        flat.settings.append(FlatSetting(f"{name}_{word.text}", value, scope, word.place))
+    for parameter in line.parameters:
+        word = Name(f"{line.name.text}_{parameter.word.text}", parameter.word.place)
+        flat.settings.append(FlatSetting(word, parameter.value, scope))

@@ -159,3 +159,8 @@ def refuse_zero_division(place: Place) -> Complaint:
     return Complaint(
         place, "this divides by zero", "change what stands under the line so that it is not zero"
     )
+
+
+def refuse_negative_root(place: Place) -> Complaint:
+    """Return the complaint about the square root of a negative number."""
+    return Complaint(place, "this is the square root of a negative number", "change the sign under the root")

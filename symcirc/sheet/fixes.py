@@ -1,371 +1,181 @@
-"""Settings: which names formulas may hold, and what each is set to."""
+"""What is fixed: numbers with their units, and ties."""
 
 from __future__ import annotations
 
-import math
-from collections.abc import Iterable, Mapping
-from fractions import Fraction
+from collections.abc import Iterator, Mapping
+from dataclasses import dataclass, field
 
 import sympy
 
-from symcirc.complaints import Complaint, Place, nearest
-from symcirc.sheet import statements as st
-from symcirc.sheet.devices import DIMENSIONS
-from symcirc.sheet.exact import exact_number, is_number
+from symcirc.complaints import Complaint, Place
+from symcirc.sheet.exact import exact_number, in_bounds, is_number, sign_of
 from symcirc.sheet.expand import Flat, FlatSetting
-from symcirc.sheet.expression import (
-    LARGEST,
-    SMALLEST,
-    Expression,
-    Name,
-    Number,
-    Power,
-    Product,
-    Reciprocal,
-    Root,
-    Sum,
-    children,
-    fold,
-    names,
-    rename,
-)
-from symcirc.sheet.model import Fix, Symbol, Value
-
-PART_DIMENSIONS = {"R": "ohm", "C": "F", "L": "H", "Z": "ohm", "Y": "S"}
-#: Names that mean something in every formula.
-RESERVED = {"s": "the complex frequency", "pi": "the number pi", "sqrt": "the square root"}
-#: A tie with more products than this, or a higher power, is refused before it is multiplied out.
-MOST_PRODUCTS, HIGHEST_POWER = 5_000, 200
+from symcirc.sheet.expression import Expression, Name, names, rename
+from symcirc.sheet.formulas import Size, check_names, check_size
+from symcirc.sheet.model import Fix, Symbol
+from symcirc.sheet.namespace import Namespace
+from symcirc.sheet.trial import Trial, free, known, try_out
+from symcirc.sheet.units import check_unit, in_base_units
 
 
-def check_name(name: str, place: Place) -> None:
-    """Raise Complaint for a name that formulas keep for themselves."""
-    if name in RESERVED or name.startswith(("V_", "I_")):
-        meaning = RESERVED.get(name, "a voltage or a current")
-        raise Complaint(place, f"`{name}` is kept for {meaning}", "choose another name")
+@dataclass(frozen=True)
+class Settled:
+    """The fixes of a sheet, the numbers of all names that have one, sizes of ties, trials of all symbols."""
+
+    fixes: dict[str, Fix] = field(default_factory=dict)
+    numbers: dict[str, sympy.Expr] = field(default_factory=dict)
+    sizes: dict[str, Size] = field(default_factory=dict)
+    trials: dict[str, Trial] = field(default_factory=dict)
 
 
-def declare(flat: Flat, chosen: Iterable[Name], solved: Iterable[Name]) -> dict[str, Symbol]:
-    """Return every name that formulas may hold, parts first, in the sheet's order.
-
-    Raises Complaint for a name that is reserved or that means two things.
-    """
-    symbols: dict[str, Symbol] = {}
-
-    def add(symbol: Symbol) -> None:
-        check_name(symbol.name, symbol.place)
-        if symbol.name in symbols:
-            raise Complaint(
-                symbol.place,
-                f"`{symbol.label}` already means something else",
-                "give one of the two another name",
-            )
-        symbols[symbol.name] = symbol
-
-    for part in flat.parts:
-        add(Symbol(part.name, part.label, "part", PART_DIMENSIONS[part.kind], part.place))
-    settings = {setting.name: setting.place for setting in flat.settings}
-    declared = settings | {name.text: name.place for name in (*chosen, *solved)}
-    for device in flat.devices:
-        optional = ("gain", "gbw") if device.kind == "opamp" else ()
-        words = list(device.parameters) + [w for w in optional if w not in device.parameters]
-        for word in words:
-            name = f"{device.name}_{word}"
-            if word in device.parameters or name in declared:
-                add(Symbol(name, f"{device.label}_{word}", "parameter", DIMENSIONS[word], device.place))
-    outside = {s.name for s in flat.settings if _free_name(s, symbols) not in symbols}
-    for setting in flat.settings:
-        name = _free_name(setting, symbols)
-        if name not in symbols and setting.name in outside:
-            add(Symbol(name, name, "free", None, setting.place))
-    for word_ in (*chosen, *solved):
-        if word_.text not in symbols:
-            add(Symbol(word_.text, word_.text, "free", None, word_.place))
-    for setting in flat.settings:
-        _bring_in(setting, symbols)
-    return symbols
-
-
-def _free_name(setting: FlatSetting, symbols: Mapping[str, Symbol]) -> str:
-    """Return the flat name that a setting means: the block's own part or device, else the sheet's name."""
-    if setting.name in symbols:
-        return setting.name
-    return setting.name.removeprefix(setting.scope.prefix)
-
-
-def _bring_in(setting: FlatSetting, symbols: dict[str, Symbol]) -> None:
-    """Declare the parts inside a general impedance or admittance: ``fix Y3 = s*C3 + 1/R3`` brings in C3 and R3."""
-    target = symbols[_free_name(setting, symbols)]
-    if target.role != "part" or target.name.removeprefix(setting.scope.prefix)[:1] not in ("Z", "Y"):
-        return
-    for name in names(setting.value.expression):
-        known = setting.scope.prefix + name.text in symbols or name.text in symbols
-        if not known and name.text[0] in "RCL" and len(name.text) > 1 and name.text not in RESERVED:
-            dimension = PART_DIMENSIONS[name.text[0]]
-            symbols[name.text] = Symbol(name.text, name.text, "free", dimension, name.place)
-
-
-def settle(flat: Flat, symbols: Mapping[str, Symbol]) -> dict[str, Fix]:
+def settle(flat: Flat, namespace: Namespace) -> Settled:
     """Return what each fixed name is set to.
 
-    Raises Complaint for a name fixed twice, an unknown name, a unit that does not fit, a value that cannot be, an
-    expression out of bounds and a loop of fixes.
+    Raises Complaint for a name fixed twice, an unknown name, a unit that does not fit, a value that cannot
+    be, an expression out of bounds or dividing by zero, and a loop of fixes.
     """
     fixes: dict[str, Fix] = {}
     for setting in flat.settings:
-        symbol = symbols[_free_name(setting, symbols)]
-        if symbol.name in fixes:
-            first = fixes[symbol.name].place
+        fix = _fix(setting, namespace)
+        first = fixes.get(fix.name)
+        if first is None:
+            fixes[fix.name] = fix
+        elif first.place != fix.place or not _is_global(setting, namespace):
+            label = namespace.symbols[fix.name].label
             raise Complaint(
-                setting.place,
-                f"`{symbol.label}` is fixed twice: it is fixed on line {first.line} already",
+                fix.place,
+                f"`{label}` is fixed twice: it is fixed on line {first.place.line} already",
                 "remove one of the two",
             )
-        fixes[symbol.name] = _fix(setting, symbol, symbols)
-    _refuse_loops(fixes)
-    _check_tied_values(fixes, symbols)
-    return fixes
+    settled = Settled(fixes)
+    _settle_ties(settled, namespace)
+    return settled
 
 
-def _fix(setting: FlatSetting, symbol: Symbol, symbols: Mapping[str, Symbol]) -> Fix:
-    value = setting.value
-    prefix = setting.scope.prefix
+def _is_global(setting: FlatSetting, namespace: Namespace) -> bool:
+    """Tell whether a block's fix says the same in every use: it holds none of the block's names."""
+    words = (setting.name, *names(setting.value.expression))
+    return all(namespace.name(word, setting) == word.text for word in words)
 
-    def flat_name(name: Name) -> str:
-        return prefix + name.text if prefix + name.text in symbols else name.text
 
-    expression = rename(value.expression, flat_name)
+def _fix(setting: FlatSetting, namespace: Namespace) -> Fix:
+    value, place = setting.value, setting.name.place
+    symbol = namespace.symbols[namespace.name(setting.name, setting)]
     check_unit(value, symbol)
-    if is_number(expression):
-        number = _in_base_units(exact_number(expression), value, symbol)
-        check_value(number, symbol, value.place)
-        return Fix(symbol.name, expression, number, value.unit, setting.place)
-    takes_s = (
-        symbol.role == "parameter" and symbol.dimension != "Hz" or symbol.name.removeprefix(prefix)[0] in "ZY"
+    if is_number(value.expression):
+        number = in_base_units(exact_number(value.expression), value, symbol)
+        check_number(number, symbol, namespace, value.place)
+        return Fix(symbol.name, value.expression, number, value.unit, place)
+    expression = rename(value.expression, lambda name: namespace.name(name, setting))
+    check_names(expression, namespace.symbols, s_allowed=True)
+    return Fix(symbol.name, expression, None, None, place)
+
+
+def check_number(number: sympy.Expr, symbol: Symbol, namespace: Namespace, place: Place) -> None:
+    """Raise Complaint for a number that the name cannot have."""
+    refused = namespace.refused_signs(symbol)
+    sign = sign_of(number)
+    if sign in refused:
+        raise _wrong_sign(symbol, sign, refused, place)
+    if not in_bounds(number):
+        raise _out_of_range(symbol, place)
+
+
+def _wrong_sign(symbol: Symbol, sign: int, refused: tuple[int, ...], place: Place) -> Complaint:
+    return Complaint(
+        place,
+        f"`{symbol.label}` cannot be {'zero' if sign == 0 else 'negative'}",
+        "give it a value greater than zero, or leave it out" if -1 in refused else "give it another value",
     )
-    check_names(expression, symbols, s_allowed=takes_s and symbol.role != "free")
-    check_size(expression)
-    return Fix(symbol.name, expression, None, None, setting.place)
 
 
-def check_names(expression: Expression, symbols: Mapping[str, Symbol], *, s_allowed: bool) -> None:
-    """Raise Complaint for a name that is not declared, and for ``s`` or a root of names where none may be."""
-    for name in names(expression):
-        if name.text == "pi" or (name.text == "s" and s_allowed):
-            continue
-        if name.text == "s":
-            raise Complaint(
-                name.place,
-                "`s` cannot stand here",
-                "only Z, Y, an amplifier's gain and a target may depend on s",
-            )
-        if name.text not in symbols:
-            hint = nearest(name.text, symbols)
-            raise Complaint(
-                name.place,
-                f"`{name.text}` is not declared",
-                hint or f"declare it: fix {name.text} = value, or choose {name.text}",
-            )
-    for root in _roots(expression):
-        if not is_number(root):
-            raise Complaint(
-                root.place,
-                "a square root of names is not a ratio of polynomials",
-                "name the root itself (choose q) and write its square where the name stood (k = q^2)",
-            )
-
-
-def _roots(expression: Expression) -> Iterable[Root]:
-    waiting = [expression]
-    while waiting:
-        node = waiting.pop()
-        if isinstance(node, Root):
-            yield node
-        waiting.extend(children(node))
-
-
-def check_size(expression: Expression) -> None:
-    """Raise Complaint where multiplying out would make too many products or too high a power, before it is done."""
-
-    def combine(node: Expression, sizes: list[tuple[int, int, int]]) -> tuple[int, int, int]:
-        above, below, degree = _size(node, sizes)
-        if max(above, below) > MOST_PRODUCTS or degree > HIGHEST_POWER:
-            raise Complaint(
-                node.place,
-                "this expression is too large when multiplied out",
-                "name its inner parts, or simplify it",
-            )
-        return above, below, degree
-
-    fold(expression, combine)
-
-
-def _size(node: Expression, sizes: list[tuple[int, int, int]]) -> tuple[int, int, int]:
-    """Bound (products above the line, products below it, degree) of a node from those of its operands."""
-    match node:
-        case Number():
-            return 1, 1, 0
-        case Name():
-            return 1, 1, 1
-        case Sum():
-            below = math.prod(b for _, b, _ in sizes)
-            degree = max(d for _, _, d in sizes) if below == 1 else sum(d for _, _, d in sizes)
-            return sum(a * (below // b) for a, b, _ in sizes), below, degree
-        case Product():
-            return (
-                math.prod(a for a, _, _ in sizes),
-                math.prod(b for _, b, _ in sizes),
-                sum(d for _, _, d in sizes),
-            )
-        case Power(exponent=exponent):
-            above, below, degree = sizes[0]
-            e = abs(exponent)
-            powers = math.comb(above + e - 1, e), math.comb(below + e - 1, e)
-            return (*(powers if exponent >= 0 else powers[::-1]), degree * e)
-        case Reciprocal():
-            above, below, degree = sizes[0]
-            return below, above, degree
-        case _:
-            return sizes[0]
-
-
-# units and values ----------------------------------------------------------------------------------------------
-
-
-def check_unit(value: Value, symbol: Symbol) -> None:
-    """Raise Complaint where the unit or the code's letter contradicts the name."""
-    allowed = {
-        "ratio": (None, "dB", "%"),
-        "Hz": (None, "Hz", "rad/s"),
-        None: (None, "ohm", "F", "H", "S", "Hz", "rad/s", "s", "dB", "%"),
-    }.get(symbol.dimension, (None, symbol.dimension))
-    if value.unit not in allowed:
-        wanted = {"ratio": "is a ratio", "Hz": "is a frequency, in Hz"}.get(
-            symbol.dimension or "", f"is in {symbol.dimension}"
-        )
-        wanted = wanted if symbol.dimension else "is a parameter"
-        raise Complaint(
-            value.place,
-            f"the unit {value.unit} does not fit: `{symbol.label}` {wanted}",
-            _unit_mend(symbol.dimension),
-        )
-    code_units = {"R": "ohm", "F": "F"}
-    fits = code_units.get(value.code or "", symbol.dimension)
-    if symbol.dimension is not None and fits != symbol.dimension:
-        raise Complaint(
-            value.place,
-            f"the code letter {value.code} means {fits}, and `{symbol.label}` is not in {fits}",
-            _unit_mend(symbol.dimension),
-        )
-
-
-def _unit_mend(dimension: str | None) -> str:
-    examples = {
-        "ohm": "write 4.7 kohm or 4k7",
-        "F": "write 22 nF or 22n",
-        "H": "write 10 mH or 10m",
-        "S": "write 2 mS",
-        "Hz": "write 1 MHz or 6e6 rad/s",
-        "ratio": "write 10, or 20 dB",
-    }
-    return examples.get(dimension or "", "use ohm, F, H, S, Hz, rad/s, s, dB, %, or no unit")
-
-
-def _in_base_units(number: sympy.Expr, value: Value, symbol: Symbol) -> sympy.Expr:
-    if value.unit == "dB":
-        return sympy.Integer(10) ** (number / 20)
-    if value.unit == "%":
-        return number / 100
-    if value.unit == "rad/s" and symbol.dimension == "Hz":
-        return number / (2 * sympy.pi)
-    return number
-
-
-def check_value(number: sympy.Expr, symbol: Symbol, place: Place) -> None:
-    """Raise Complaint for a value that the name cannot have."""
-    must_be_positive = (
-        symbol.role == "part" or symbol.dimension in ("ohm", "F", "H", "Hz") and symbol.role == "free"
+def _out_of_range(symbol: Symbol, place: Place) -> Complaint:
+    return Complaint(
+        place,
+        f"the value of `{symbol.label}` is out of range",
+        "use a value between 1e-30 and 1e30 in size",
     )
-    amplifier = symbol.role == "parameter" and (symbol.dimension == "Hz" or symbol.name.endswith("_ratio"))
-    if (must_be_positive and not number.is_positive) or (amplifier and number.is_zero):
-        what = "zero" if number.is_zero else "negative"
-        raise Complaint(
-            place,
-            f"`{symbol.label}` cannot be {what}",
-            "give it a value greater than zero, or leave the part out",
-        )
-    if number.is_zero:
-        return
-    size = abs(sympy.N(number, 20))
-    if not sympy.Rational(SMALLEST.numerator, SMALLEST.denominator) <= size <= sympy.Integer(int(LARGEST)):
-        raise Complaint(
-            place,
-            f"the value of `{symbol.label}` is out of range",
-            "use a value between 1e-30 and 1e30 in size",
-        )
 
 
-# ties ----------------------------------------------------------------------------------------------------------
+# ties -------------------------------------------------------------------------------------------------------
 
 
-def _refuse_loops(fixes: Mapping[str, Fix]) -> None:
-    finished: set[str] = set()
-    for start in fixes:
-        path: list[str] = []
-        waiting = [(start, False)]
-        while waiting:
-            name, leaving = waiting.pop()
-            if leaving:
-                finished.add(path.pop())
-            elif name in path:
-                loop = " -> ".join([*path[path.index(name) :], name])
-                raise Complaint(
-                    fixes[name].place,
-                    f"these fixes go in a loop: {loop}",
-                    "set one of them to a value, or choose it",
-                )
-            elif name not in finished and name in fixes and fixes[name].number is None:
-                path.append(name)
-                waiting.append((name, True))
-                waiting.extend((n.text, False) for n in names(fixes[name].expression))
+def _settle_ties(settled: Settled, namespace: Namespace) -> None:
+    """Try every tie with the numbers that are there, the inner ones first."""
+    fixes, sizes, trials = settled.fixes, settled.sizes, settled.trials
+    order = tie_order({name: fix.expression for name, fix in fixes.items() if fix.number is None})
+    for name, symbol in namespace.symbols.items():
+        number = fixes[name].number if name in fixes else None
+        if number is not None:
+            settled.numbers[name], trials[name] = number, known(number)
+        elif name not in fixes:
+            trials[name] = free(name, positive=-1 in namespace.refused_signs(symbol))
+    with_s = {"s"}
+    for name in order:
+        symbol, expression = namespace.symbols[name], fixes[name].expression
+        inner = next((n for n in names(expression) if n.text in with_s), None)
+        if inner is not None:
+            with_s.add(name)
+            if not namespace.may_hold_s(symbol):
+                raise _no_s_here(symbol, inner)
+        sizes[name] = check_size(expression, sizes)
+        trials[name] = try_out(expression, trials)
+        _check_trial(trials[name], symbol, namespace, expression.place)
+        if trials[name].is_known:
+            settled.numbers[name] = exact_number(expression, settled.numbers)
+
+
+def _no_s_here(symbol: Symbol, name: Name) -> Complaint:
+    depends = (
+        "`s` cannot stand here"
+        if name.text == "s"
+        else f"`{symbol.label}` would depend on s, as `{name.text}` does"
+    )
+    return Complaint(name.place, depends, "only Z, Y, an amplifier's gain and a target may depend on s")
+
+
+def _check_trial(trial: Trial, symbol: Symbol, namespace: Namespace, place: Place) -> None:
+    refused = namespace.refused_signs(symbol)
+    sign = 0 if trial.is_zero else trial.sign
+    if sign is not None and sign in refused:
+        raise _wrong_sign(symbol, sign, refused, place)
+    if trial.is_known and not trial.in_bounds:
+        raise _out_of_range(symbol, place)
 
 
 def tie_order(ties: Mapping[str, Expression]) -> list[str]:
     """Return the tied names so that each comes after the tied names that its expression holds.
 
+    Raises Complaint where they go in a loop.
+
     >>> tie_order({})
     []
     """
     order: list[str] = []
-    waiting = [(name, False) for name in reversed(ties)]
-    while waiting:
-        name, leaving = waiting.pop()
-        if name in order or name not in ties:
-            continue
-        if leaving:
-            order.append(name)
-        else:
-            waiting.append((name, True))
-            waiting.extend((n.text, False) for n in names(ties[name]))
+    done: set[str] = set()
+    for start in ties:
+        path: dict[str, Iterator[Name]] = {}
+        if start not in done:
+            path[start] = names(ties[start])
+        while path:
+            current = next(reversed(path))
+            inner = next((n for n in path[current] if n.text in ties and n.text not in done), None)
+            if inner is None:
+                del path[current]
+                done.add(current)
+                order.append(current)
+            elif inner.text in path:
+                raise _loop([*path], inner)
+            else:
+                path[inner.text] = names(ties[inner.text])
     return order
 
 
-def _check_tied_values(fixes: Mapping[str, Fix], symbols: Mapping[str, Symbol]) -> None:
-    """Where every name of a tie has a number, the tied value must be one that the name can have."""
-    known = {name: fix.number for name, fix in fixes.items() if fix.number is not None}
-    for name in tie_order({n: f.expression for n, f in fixes.items() if f.number is None}):
-        expression = fixes[name].expression
-        if all(n.text in known or n.text == "pi" for n in names(expression)):
-            number = exact_number(expression, known)
-            check_value(number, symbols[name], fixes[name].place)
-            known[name] = number
-
-
-def number_of(value: Value) -> Fraction | None:
-    """Return a value's number where it was written as a plain one, else None."""
-    return value.expression.value if isinstance(value.expression, Number) else None
-
-
-def all_names(lines: Iterable[st.ChooseLine | st.SolveLine]) -> list[Name]:
-    """Return the names of several lines in turn."""
-    return [name for line in lines for name in line.names]
+def _loop(path: list[str], again: Name) -> Complaint:
+    loop = path[path.index(again.text) :]
+    shown = loop if len(loop) < 8 else [*loop[:3], "...", *loop[-3:]]
+    return Complaint(
+        again.place,
+        f"these fixes go in a loop: {' -> '.join([*shown, again.text])}",
+        "set one of them to a value, or choose it",
+    )

@@ -1,7 +1,7 @@
 """What a stage sheet says, as plain records: blocks placed, names resolved, every record with its place.
 
-Names are the flat ones that formulas use (``S1_R1`` for part R1 of the block placed as S1); ``label`` is how the
-same thing is shown in sentences (``S1.R1``).
+Names are the flat ones that formulas use (``S1_R1`` for part R1 of the block placed as S1); ``label`` is how
+the same thing is shown in sentences (``S1.R1``).
 """
 
 from __future__ import annotations
@@ -21,8 +21,8 @@ GROUND = "gnd"
 class Value:
     """A value as it was written: an expression in SI base units, and the unit that stood behind it.
 
-    ``unit`` is one of ohm, F, H, S, Hz, rad/s, s, dB, %, deg, or None where none was written. A value in dB, %
-    or deg keeps its number as written. ``code`` is the letter of an IEC 60062 value code (``R`` in 0R47).
+    ``unit`` is one of ohm, F, H, S, Hz, rad/s, s, dB, %, deg, or None where none was written. A value in dB,
+    % or deg keeps its number as written. ``code`` is the letter of an IEC 60062 value code (``R`` in 0R47).
     """
 
     expression: Expression
@@ -48,10 +48,10 @@ class Device:
     """A part with more than two terminals.
 
     ``kind`` is opamp, vcvs, vccs, cccs, ccvs, transformer or conveyor. ``terminals`` maps a role to its node
-    (plus, minus, x, y, z, an amplifier's drives) or to its two nodes (senses, primary, secondary, a controlled
-    source's drives). ``parameters`` maps a word (gain, gm, rm, ratio, gbw) to the formula symbol for it
-    (``U1_gain``): always there for the controlled sources and the transformer, and for an opamp only what the
-    sheet gives. ``sign`` is a conveyor's, +1 or -1.
+    (plus, minus, x, y, z, an amplifier's drives) or to its two nodes (senses, primary, secondary, a
+    controlled source's drives). ``parameters`` maps a word (gain, gm, rm, ratio, gbw) to the formula symbol
+    for it (``U1_gain``): always there for the controlled sources and the transformer, and for an opamp only
+    what the sheet gives. ``sign`` is a conveyor's, +1 or -1.
     """
 
     name: str
@@ -65,7 +65,7 @@ class Device:
 
 @dataclass(frozen=True)
 class Fix:
-    """What a name is set to: an exact ``number`` in SI base units, or an expression in other names (a tie)."""
+    """What a name is set to: an exact ``number`` in SI base units, or an expression in names (a tie)."""
 
     name: str
     expression: Expression
@@ -78,8 +78,8 @@ class Fix:
 class Symbol:
     """A declared name that formulas may hold: a part, a device's parameter or a parameter of the sheet.
 
-    ``role`` is part, parameter (of a device) or free (declared by fix, choose, solve, or brought in by a Y or Z).
-    ``dimension`` is ohm, F, H, S, Hz, or None where any unit may be given.
+    ``role`` is part, parameter (of a device) or free (declared by fix, choose, solve, or brought in by a Y or
+    Z). ``dimension`` is ohm, F, H, S, Hz, or None where any unit may be given.
     """
 
     name: str
@@ -123,7 +123,7 @@ Quantity = Voltage | PartCurrent | NodeCurrent
 
 @dataclass(frozen=True)
 class Dead:
-    """A condition of ``with``: the voltage of a node is zero (shorted) or its drive current is zero (open)."""
+    """A condition of ``with``: the voltage of a node is zero (shorted) or its drive current is (open)."""
 
     quantity: str  # "V" or "I"
     node: str
@@ -132,7 +132,7 @@ class Dead:
 
 @dataclass(frozen=True)
 class Ask:
-    """A ratio that is asked for. ``over`` and ``under`` are None for a loop gain of ``loop`` (an amplifier)."""
+    """A ratio that is asked for; ``over`` and ``under`` are None for a loop gain of amplifier ``loop``."""
 
     name: str
     over: Quantity | None
@@ -147,8 +147,8 @@ class Ask:
 class Target:
     """What an ask must become: a family or shape with its words, or an explicit expression in s.
 
-    ``words`` maps order, edge, edge loss, ripple, stop, gain, centre, bandwidth, f0, q to the values that stand
-    behind them; ``edges f1 f2`` gives "lower edge" and "upper edge".
+    ``words`` maps order, edge, edge loss, ripple, stop, gain, centre, bandwidth, f0, q to the values that
+    stand behind them; ``edges f1 f2`` gives "lower edge" and "upper edge".
     """
 
     ask: str
@@ -162,7 +162,7 @@ class Target:
 
 @dataclass(frozen=True)
 class Limit:
-    """A line of the mask: loss at most (``sense`` "<=") or at least (">=") so many dB from low to high, in hertz.
+    """A line of the mask: loss at most (``sense`` "<=") or at least (">=") so many dB from low to high.
 
     ``low`` is None for ``below``, ``high`` is None for ``above``.
     """

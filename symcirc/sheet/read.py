@@ -2,36 +2,45 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from dataclasses import replace
 from pathlib import PurePath
 from typing import TypeVar
 
-from symcirc.complaints import Complaint, Place, Remark, Source, nearest
+from symcirc.complaints import Complaint, Complaints, Place, Source
 from symcirc.sheet import statements as st
 from symcirc.sheet.asks import Lookup, read_asks
-from symcirc.sheet.expand import Flat, expand
-from symcirc.sheet.expression import Name, names
-from symcirc.sheet.fixes import all_names, declare, settle
-from symcirc.sheet.model import GROUND, Fix, Limit, Sheet, Symbol, Target
+from symcirc.sheet.bounds import LARGEST_FILE, refuse_length
+from symcirc.sheet.declared import check_declarations, unused_names
+from symcirc.sheet.expand import expand
+from symcirc.sheet.fixes import Settled, settle
+from symcirc.sheet.limits import read_buyables, read_limits
+from symcirc.sheet.model import Sheet
+from symcirc.sheet.namespace import Namespace, check_nodes
 from symcirc.sheet.parse import parse_sheet
-from symcirc.sheet.targets import read_buyables, read_limits, read_targets
+from symcirc.sheet.targets import read_targets
 
 S = TypeVar("S", bound=st.Statement)
+#: Bytes of the longest character in UTF-8.
+WIDEST_CHARACTER = 4
 
 
 def decode(data: bytes, file: str) -> Source:
-    """Return the text of a file; raises Complaint with the place of the first byte that is not UTF-8.
+    """Return the text of a file.
+
+    Raises Complaint for more than a million characters, and at the first byte that is not UTF-8.
 
     >>> decode(b"ask H = V_a/V_b", "a.stage").text
     'ask H = V_a/V_b'
     """
+    if len(data) > WIDEST_CHARACTER * LARGEST_FILE:
+        raise refuse_length(Source(file, ""))
     try:
         text = data.decode("utf-8-sig")
     except UnicodeDecodeError as error:
-        before = data[: error.start].decode("utf-8-sig", errors="replace")
+        before = error.object[: error.start].decode("utf-8")
         line = before.count("\n") + 1
-        column = len(before) - (before.rfind("\n") + 1) + 1
-        source = Source(file, data.decode("utf-8", errors="replace"))
+        column = len(before) - before.rfind("\n")
+        source = Source(file, error.object.decode("utf-8", errors="replace"))
         raise Complaint(
             Place(line, column, column + 1, source),
             "this is not UTF-8 text",
@@ -43,7 +52,8 @@ def decode(data: bytes, file: str) -> Source:
 def read_sheet(source: Source) -> Sheet:
     """Return the sheet that a text says.
 
-    Raises Complaint at the first thing that cannot be used.
+    Raises Complaint for what cannot be used; of several the first in the file, as far as they do not follow
+    from each other.
 
     >>> sheet = read_sheet(Source("a.stage", "in -- R1 -- out -- C1 -- gnd\\nask H = V_out/V_in"))
     >>> [part.name for part in sheet.parts], sheet.title
@@ -51,120 +61,63 @@ def read_sheet(source: Source) -> Sheet:
     """
     statements = parse_sheet(source)
     flat = expand(statements)
-    chosen = all_names(_of(statements, st.ChooseLine))
-    solved = all_names(_of(statements, st.SolveLine))
-    symbols = declare(flat, chosen, solved)
-    fixes = settle(flat, symbols)
-    _check_declarations(chosen, solved, fixes)
-    _check_namespaces(flat, symbols)
-    declared = set(fixes) | {name.text for name in (*chosen, *solved)}
-    lookup = Lookup(flat.node_places, tuple(flat.parts), tuple(flat.devices))
-    asks = read_asks(_of(statements, st.AskLine), lookup, symbols, declared)
+    chosen = tuple(name for line in _of(statements, st.ChooseLine) for name in line.names)
+    solved = tuple(name for line in _of(statements, st.SolveLine) for name in line.names)
+    namespace = Namespace(flat, chosen, solved)
+    symbols = namespace.symbols
+
+    complaints = Complaints()
+    complaints.attempt(lambda: check_nodes(flat))
+    title = complaints.attempt(lambda: _title(statements))
+    settled = complaints.attempt(lambda: settle(flat, namespace)) or Settled()
+    asks = complaints.attempt(lambda: read_asks(_of(statements, st.AskLine), Lookup(flat), symbols)) or ()
+    complaints.raise_first()
     if not asks:
         raise Complaint(Place(1, 1, 2, source), "nothing is asked", "add a line such as: ask H = V_out/V_in")
-    targets = read_targets(_of(statements, st.TargetLine), asks, symbols)
-    limits = read_limits(_of(statements, st.LimitLine), asks, symbols)
-    unused = _unused(symbols, fixes, targets, limits, [*chosen, *solved])
-    return Sheet(
+    asked = {ask.name: ask.place for ask in asks}
+    limit_lines = _of(statements, st.LimitLine)
+    part_lines = _of(statements, st.PartsLine)
+    limited = {line.name.text for line in limit_lines}
+    target_lines = [s for s in statements if isinstance(s, st.TargetLine)]
+    complaints.attempt(lambda: check_declarations(chosen, solved, settled.fixes))
+    limits = complaints.attempt(lambda: read_limits(limit_lines, asked, symbols, settled)) or ()
+    targets = complaints.attempt(lambda: read_targets(target_lines, asked, limited, symbols, settled)) or ()
+    buyables = complaints.attempt(lambda: read_buyables(part_lines, symbols, settled)) or ()
+    complaints.raise_first()
+
+    sheet = Sheet(
         source=source,
-        title=_title(statements, source),
+        title=title or PurePath(source.file).stem,
         parts=tuple(flat.parts),
-        devices=tuple(flat.devices),
+        devices=namespace.devices,
         node_labels=flat.node_labels,
         node_places=flat.node_places,
         ports=frozenset(flat.port_nodes),
         symbols=symbols,
-        fixes=fixes,
+        fixes=settled.fixes,
         chosen=tuple(name.text for name in chosen),
         solved=tuple(name.text for name in solved),
         asks=asks,
         targets=targets,
         limits=limits,
-        buyables=read_buyables(_of(statements, st.PartsLine)),
+        buyables=buyables,
         notes=tuple(line.text for line in _of(statements, st.NoteLine)),
-        remarks=(*unused, *_unused_blocks(statements, flat)),
+        remarks=(),
     )
+    remarks = [*flat.remarks, *unused_names(sheet)]
+    return replace(sheet, remarks=tuple(sorted(remarks, key=lambda remark: remark.place)))
 
 
 def _of(statements: tuple[st.Statement, ...], kind: type[S]) -> list[S]:
     return [s for s in statements if isinstance(s, kind)]
 
 
-def _title(statements: tuple[st.Statement, ...], source: Source) -> str:
+def _title(statements: tuple[st.Statement, ...]) -> str:
     lines = _of(statements, st.StageLine)
     if len(lines) > 1:
         raise Complaint(
-            lines[1].place, "a sheet has one `stage` line, and this is the second", "remove one of the two"
+            lines[1].place,
+            f"a sheet has one `stage` line, and line {lines[0].place.line} has it already",
+            "remove one of the two",
         )
-    return lines[0].title if lines else PurePath(source.file).stem
-
-
-def _check_declarations(chosen: list[Name], solved: list[Name], fixes: Mapping[str, Fix]) -> None:
-    seen: dict[str, str] = {}
-    for verb, words in (("choose", chosen), ("solve", solved)):
-        for name in words:
-            if name.text in seen:
-                first = seen[name.text]
-                raise Complaint(
-                    name.place,
-                    f"`{name.text}` stands behind `{first}` already",
-                    "name it once" if first == verb else "a name is either chosen or solved for: keep one",
-                )
-            seen[name.text] = verb
-            fix = fixes.get(name.text)
-            if fix is not None and (verb == "solve" or fix.number is None):
-                raise Complaint(
-                    name.place,
-                    f"`{name.text}` is fixed on line {fix.place.line}, so it cannot be {verb}d"
-                    if verb == "solve"
-                    else f"`{name.text}` is tied on line {fix.place.line}, so it cannot be chosen",
-                    "remove one of the two",
-                )
-
-
-def _check_namespaces(flat: Flat, symbols: Mapping[str, Symbol]) -> None:
-    for device in flat.devices:
-        if device.name in symbols:
-            raise Complaint(
-                device.place, f"`{device.label}` already means something else", "give it another name"
-            )
-    for name, place in flat.places.items():
-        if name in flat.node_places or name == GROUND:
-            node = flat.node_places.get(name, place)
-            raise Complaint(
-                max(place, node),
-                f"`{name}` is a part and a node at once",
-                "give the part or the node another name",
-            )
-
-
-def _unused(
-    symbols: Mapping[str, Symbol],
-    fixes: Mapping[str, Fix],
-    targets: tuple[Target, ...],
-    limits: tuple[Limit, ...],
-    declared: list[Name],
-) -> list[Remark]:
-    """Return a remark for every free name that nothing uses: most often a name that was mistyped."""
-    expressions = [fix.expression for fix in fixes.values() if fix.number is None]
-    expressions += [value.expression for target in targets for value in target.words.values()]
-    expressions += [target.expression for target in targets if target.expression is not None]
-    expressions += [v.expression for limit in limits for v in (limit.low, limit.high) if v is not None]
-    used = {name.text for expression in expressions for name in names(expression)}
-    places = {name.text: name.place for name in declared}
-    remarks = []
-    for symbol in symbols.values():
-        if symbol.role == "free" and symbol.name not in used:
-            hint = nearest(symbol.name, [s.name for s in symbols.values() if s.name != symbol.name])
-            place = places.get(symbol.name, symbol.place)
-            remarks.append(Remark(place, f"nothing uses `{symbol.name}`" + (f"; {hint}" if hint else "")))
-    return remarks
-
-
-def _unused_blocks(statements: tuple[st.Statement, ...], flat: Flat) -> list[Remark]:
-    inner = {s.block.text for b in _of(statements, st.Block) for s in b.body if isinstance(s, st.UseLine)}
-    return [
-        Remark(block.place, f"block `{block.name.text}` is never used")
-        for block in _of(statements, st.Block)
-        if block.name.text not in flat.used_blocks | inner
-    ]
+    return lines[0].title if lines else ""

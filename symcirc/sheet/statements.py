@@ -22,6 +22,29 @@ class Chain:
     """``node -- part -- node ...``: the words in turn."""
 
     words: tuple[Name, ...]
+
+
+@dataclass(frozen=True)
+class Terminal:
+    """``role node`` or ``role node node`` of a device."""
+
+    role: Name
+    nodes: tuple[Name, ...]
+
+
+@dataclass(frozen=True)
+class Parameter:
+    """``word value`` of a device."""
+
+    word: Name
+    value: Value
+
+
+@dataclass(frozen=True)
+class Sign:
+    """``sign +`` or ``sign -`` of a device."""
+
+    sign: int
     place: Place
 
 
@@ -31,10 +54,9 @@ class DeviceLine:
 
     name: Name
     kind: Name
-    terminals: tuple[tuple[Name, tuple[Name, ...]], ...]
-    parameters: tuple[tuple[Name, Value], ...]
-    signs: tuple[tuple[int, Place], ...]
-    place: Place
+    terminals: tuple[Terminal, ...]
+    parameters: tuple[Parameter, ...]
+    signs: tuple[Sign, ...]
 
 
 @dataclass(frozen=True)
@@ -50,7 +72,6 @@ class FixLine:
     """``fix NAME = value, ...``."""
 
     settings: tuple[Setting, ...]
-    place: Place
 
 
 @dataclass(frozen=True)
@@ -60,7 +81,6 @@ class UseLine:
     block: Name
     name: Name
     nodes: tuple[Name, ...]
-    place: Place
 
 
 @dataclass(frozen=True)
@@ -70,7 +90,6 @@ class Block:
     name: Name
     ports: tuple[Name, ...]
     body: tuple[CircuitStatement, ...]
-    place: Place
 
 
 @dataclass(frozen=True)
@@ -78,7 +97,6 @@ class ChooseLine:
     """``choose NAME, ...``."""
 
     names: tuple[Name, ...]
-    place: Place
 
 
 @dataclass(frozen=True)
@@ -86,7 +104,6 @@ class SolveLine:
     """``solve NAME, ...``."""
 
     names: tuple[Name, ...]
-    place: Place
 
 
 @dataclass(frozen=True)
@@ -96,6 +113,21 @@ class RawQuantity:
     first: Name
     second: Name | None
     place: Place
+
+
+@dataclass(frozen=True)
+class Ratio:
+    """``over/under``."""
+
+    over: RawQuantity
+    under: RawQuantity
+
+
+@dataclass(frozen=True)
+class Loop:
+    """``loop(amplifier)``."""
+
+    amplifier: Name
 
 
 @dataclass(frozen=True)
@@ -109,28 +141,56 @@ class Condition:
 
 @dataclass(frozen=True)
 class AskLine:
-    """``ask NAME = over/under with ... driven at ...``; ``loop`` instead of a ratio for a loop gain."""
+    """``ask NAME = ratio with ... driven at ...``."""
 
     name: Name
-    over: RawQuantity | None
-    under: RawQuantity | None
-    loop: Name | None
+    what: Ratio | Loop
     conditions: tuple[Condition, ...]
-    driven_at: tuple[Name, ...]
+    driven_at: Name | None
+
+
+@dataclass(frozen=True)
+class Requirement:
+    """``word value``, or ``edge value at value``."""
+
+    word: Name
+    value: Value
+    at: Value | None
+
+
+@dataclass(frozen=True)
+class Edges:
+    """``edges value value``."""
+
+    low: Value
+    high: Value
     place: Place
 
 
 @dataclass(frozen=True)
-class TargetLine:
-    """``target NAME: ...`` or ``target NAME = expression``; a requirement is (word, value, value behind ``at``)."""
+class Meet:
+    """``meet limits``."""
+
+    place: Place
+
+
+@dataclass(frozen=True)
+class ShapeLine:
+    """``target NAME: KIND FAMILY, ...``."""
 
     name: Name
     shape: tuple[Name, ...]
-    requirements: tuple[tuple[Name, Value, Value | None], ...]
-    edges: tuple[tuple[Value, Value, Place], ...]
-    meet_limits: bool
-    expression: Expression | None
-    place: Place
+    requirements: tuple[Requirement, ...]
+    edges: tuple[Edges, ...]
+    meets: tuple[Meet, ...]
+
+
+@dataclass(frozen=True)
+class FormulaLine:
+    """``target NAME = expression``."""
+
+    name: Name
+    expression: Expression
 
 
 @dataclass(frozen=True)
@@ -142,7 +202,6 @@ class LimitLine:
     loss: Value
     low: Value | None
     high: Value | None
-    place: Place
 
 
 @dataclass(frozen=True)
@@ -154,7 +213,6 @@ class PartsLine:
     tolerance: Value | None
     low: Value | None
     high: Value | None
-    place: Place
 
 
 @dataclass(frozen=True)
@@ -162,10 +220,10 @@ class NoteLine:
     """``note "..."``."""
 
     text: str
-    place: Place
 
 
 CircuitStatement = Chain | DeviceLine | FixLine | UseLine
+TargetLine = ShapeLine | FormulaLine
 Statement = (
     CircuitStatement
     | StageLine
@@ -173,7 +231,8 @@ Statement = (
     | ChooseLine
     | SolveLine
     | AskLine
-    | TargetLine
+    | ShapeLine
+    | FormulaLine
     | LimitLine
     | PartsLine
     | NoteLine

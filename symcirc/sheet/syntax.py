@@ -1,18 +1,24 @@
-"""What to say where the text is not the sheet's language: from the parser's surprise to a cause and a mend."""
+"""What is said where the text is not the sheet's language: from the parser's surprise to cause and mend."""
 
 from __future__ import annotations
 
 import re
+from collections.abc import Iterable
+from dataclasses import dataclass
 
-from lark import Token
 from lark.exceptions import UnexpectedCharacters, UnexpectedInput, UnexpectedToken
 
-from symcirc.complaints import Complaint, Place, Source, listed, nearest
+from symcirc.complaints import Complaint, Place, Source, choices, listed, nearest
+from symcirc.sheet import targets
+from symcirc.sheet.devices import KINDS
+from symcirc.sheet.slips import LISTS, MARK, SIGNS, VALUES, WIRES, WORD, Slip
+from symcirc.sheet.slips_asked import ASKS, LIMITS, REST, TARGETS
+from symcirc.sheet.slips_circuit import BLOCKS, DEVICES
 
 #: How each statement is written, by its first word.
 FORMS = {
     "stage": 'stage "title"',
-    "block": "block NAME (port, ...), its lines, then `end`",
+    "block": "block NAME (port, ...), its lines, and end",
     "end": "end",
     "use": "use BLOCK as NAME (node, ...)",
     "fix": "fix NAME = value, NAME = value",
@@ -23,10 +29,13 @@ FORMS = {
     "limit": "limit H: loss <= 1 dB from 62 Hz to 2 kHz",
     "parts": "parts R: E96 1 %, from 1 kohm to 1 Mohm",
     "note": 'note "a sentence"',
+    "device": "U1 opamp: plus node, minus node, drives node",
+    "chain": "node -- part -- node",
 }
-CHAIN_FORM = "node -- part -- node"
-DEVICE_FORM = "U1 opamp: plus node, minus node, drives node"
-#: The terminals that people see, in words.
+#: First words of statements.
+STATEMENTS = [word for word in FORMS if word not in ("device", "chain")]
+SLIPS = (*SIGNS, *WIRES, *DEVICES, *BLOCKS, *LISTS, *ASKS, *TARGETS, *LIMITS, *REST, *VALUES)
+#: The terminals of the grammar in words; those that are not here are words of the language themselves.
 TERMINALS = {
     "NAME": "a name",
     "NUMBER": "a number",
@@ -43,131 +52,278 @@ TERMINALS = {
     "TIMES": "`*`",
     "OVER": "`/`",
     "POWER": "`^`",
+    "SQRT": "`sqrt`",
     "STRING": 'a "string"',
     "QUANTITY": "V_node or I_part",
     "LINE_END": "the end of the line",
     "SERIES": "a series (E3 to E192)",
-    "COMPARISON": "<= or >=",
-    "TERMINAL": "plus, minus, drives, senses, primary, secondary, x, y, z",
-    "PARAMETER": "gain, gbw, gm, rm, ratio",
-    "REQUIREMENT": "order, edge, centre, bandwidth, ripple, stop, gain, f0, q",
+    "COMPARISON": "`<=` or `>=`",
+    "TERMINAL": "a terminal",
+    "PARAMETER": "a value's word",
+    "REQUIREMENT": "a word of a target",
 }
-_HIDDEN = {"SQRT", "NODE_WORD", "$END"}
+_NOT_IN_BLOCKS = ("stage", "block", "choose", "solve", "ask", "target", "limit", "parts", "note")
+_HIDDEN = {"NODE_WORD", "$END"}
+#: So much of a line on either side of the place is looked at.
+_WINDOW = 300
+
+
+@dataclass(frozen=True)
+class Surprise:
+    """What the parser did not expect, and where.
+
+    ``found`` is the word or sign at the place, empty at a line's end; ``before`` and ``after`` are the line
+    on either side of the place, without its comment; ``kind`` is the statement's first word, or chain,
+    device, or line where it cannot be told.
+    """
+
+    place: Place
+    found: str
+    before: str
+    after: str
+    kind: str
+    accepted: frozenset[str]
+
+    @property
+    def at_start(self) -> bool:
+        """Tell whether nothing stands before the place in its line."""
+        return not self.before.strip()
+
+    def at(self, start: int, end: int) -> Place:
+        """Return the place of columns of the line, counted from 0."""
+        return Place(self.place.line, start + 1, max(start + 1, end) + 1, self.place.source)
 
 
 def explain(error: UnexpectedInput, source: Source) -> Complaint:
     """Return the complaint for what the parser did not expect, at its place."""
-    place, found = _place_and_text(error, source)
-    line = source.line(place.line)
-    accepted = set(error.accepts or ()) if isinstance(error, UnexpectedToken) else set(error.allowed or ())
-    if isinstance(error, UnexpectedToken) and not accepted:
-        accepted = set(error.expected)
-    first = re.match(r"\s*([A-Za-z][A-Za-z0-9_]*|--)?", line)
-    word = (first.group(1) if first else None) or ""
-    mend = f"write: {_form(word, line)}"
-    return _special(place, found, line, word, accepted, mend) or Complaint(
-        place, _cause(found, accepted), _mend(found, accepted, mend)
+    surprise = _surprise(error, source)
+    for explanation in (_about_blocks, _about_first_word, _about_slip, _about_letters, _about_brackets):
+        complaint = explanation(surprise)
+        if complaint is not None:
+            return complaint
+    return _plain(surprise)
+
+
+def _surprise(error: UnexpectedInput, source: Source) -> Surprise:
+    line, column = _where(error, source)
+    code = _without_comment(source.line(line))
+    column = min(column, len(code))
+    before, after = code[:column], code[column:]
+    word = re.match(rf'"[^"]*"?|{WORD}|[0-9.]+\w*|--|[<>:=]=|\*\*|[^ \t\r]', after)
+    found = word.group() if word else ""
+    place = Place(line, column + 1, column + 1 + max(1, len(found)), source)
+    if isinstance(error, UnexpectedToken):
+        accepted: Iterable[str] = error.accepts or error.expected
+    else:
+        accepted = error.allowed if isinstance(error, UnexpectedCharacters) else ()
+    return Surprise(place, found, before, after, _kind(code), frozenset(accepted))
+
+
+def _where(error: UnexpectedInput, source: Source) -> tuple[int, int]:
+    """Return the line, counted from 1, and the column, counted from 0, of what was not expected."""
+    if isinstance(error, UnexpectedToken):
+        token = error.token
+        if token.type == "LINK":  # it may have begun on a line above
+            line = (token.line or 1) + token.count("\n")
+            return line, source.line(line).find("--") if "\n" in token else (token.column or 1) - 1
+        if token.type != "$END":
+            return token.line or 1, (token.column or 1) - 1
+        code = [number for number, line in enumerate(source.lines, 1) if _without_comment(line)]
+        last = code[-1] if code else 1
+        return last, len(source.line(last))
+    return error.line, error.column - 1
+
+
+def _without_comment(line: str) -> str:
+    """Return a line without the comment and the blanks at its end."""
+    for piece in re.finditer(r'"[^"]*"|(#)', line):
+        if piece.group(1):
+            return line[: piece.start()].rstrip(" \t\r")
+    return line.rstrip(" \t\r")
+
+
+def _kind(code: str) -> str:
+    first = re.match(rf"\s*(?:--|({WORD})(\s*--)?)", code)
+    if first is None:
+        return "line"
+    word = first.group(1)
+    if word is None or first.group(2):
+        return "chain"
+    if word in STATEMENTS:
+        return str(word)
+    return "device" if re.match(rf"\s*{WORD}\s+{WORD}\s*:", code) else "line"
+
+
+# explanations: each returns a complaint for what it knows, or None ------------------------------------------
+
+
+def _about_slip(s: Surprise) -> Complaint | None:
+    start = max(0, len(s.before) - _WINDOW)
+    window = s.before[start:].replace(MARK, "?") + MARK + s.after[:_WINDOW].replace(MARK, "?")
+    for slip in SLIPS:
+        if slip.kinds and s.kind not in slip.kinds.split():
+            continue
+        match = re.search(slip.pattern.replace("{kind}", s.kind), window)
+        if match is not None:
+            return _slip(s, slip, match, start)
+    return None
+
+
+def _slip(s: Surprise, slip: Slip, match: re.Match[str], start: int) -> Complaint:
+    groups = {name: text.replace(MARK, "") for name, text in match.groupdict(default="").items()}
+    words = {"kind": s.kind, "form": FORMS.get(s.kind, ""), **groups}
+    place, mark = s.place, len(s.before) - start
+    if match.groupdict().get("at"):
+        first, end = (i + start - (i > mark) for i in match.span("at"))
+        place = s.at(first, end)
+    mend = nearest(words.get("at", ""), slip.offer) or slip.mend.format(**words)
+    return Complaint(place, slip.cause.format(**words), mend)
+
+
+def _about_letters(s: Surprise) -> Complaint | None:
+    """A letter that names do not have, or a character that nobody sees."""
+    if not s.found or (s.found.isascii() and s.found.isprintable()):
+        return None
+    if s.found[0].isalpha():
+        start = len(s.before) - len(re.findall(r"\w*$", s.before)[0])
+        word = s.before[start:] + re.findall(r"^\w*", s.after)[0]
+        return Complaint(
+            s.at(start, start + len(word)),
+            f"`{word}` holds a letter that names do not have",
+            "use ASCII letters, digits and _ in names",
+        )
+    if s.found[0].isprintable():
+        return None
+    return Complaint(
+        s.place,
+        f"an invisible character, U+{ord(s.found[0]):04X}, stands here",
+        "remove it, or write a plain blank",
     )
 
 
-def _place_and_text(error: UnexpectedInput, source: Source) -> tuple[Place, str]:
-    if isinstance(error, UnexpectedToken):
-        token = error.token
-        if token.type == "$END" or not token.line:
-            line = max(1, source.text.count("\n") + 1)
-            width = len(source.line(line)) + 1
-            return Place(line, width, width + 1, source), ""
-        text = str(token)
-        if token.type == "LINE_END":
-            end = len(source.line(token.line)) + 1
-            return Place(token.line, min(token.column, end), min(token.column, end) + 1, source), ""
-        if token.type == "LINK":  # a link may have begun on a line above
-            breaks = text.count("\n")
-            line = token.line + breaks
-            column = source.line(line).find("--") + 1 if breaks else token.column + len(text) - 2
-            return Place(line, column, column + 2, source), "--"
-        return Place(token.line, token.column, token.column + len(text), source), text
-    line_text = source.line(error.line)
-    match = re.match(r"[A-Za-z0-9_.]+|.", line_text[error.column - 1 :])
-    text = match.group() if match else ""
-    return Place(error.line, error.column, error.column + max(1, len(text)), source), text
-
-
-def _form(word: str, line: str) -> str:
-    if word in FORMS:
-        return FORMS[word]
-    if re.match(r"\s*[A-Za-z]\w*\s+[A-Za-z]\w*\s*:", line):
-        return DEVICE_FORM
-    return CHAIN_FORM
-
-
-def _special(
-    place: Place, found: str, line: str, word: str, accepted: set[str], mend: str
-) -> Complaint | None:
-    """Return the complaint for slips that are known well enough to be named, or None."""
-    before = line[: place.column - 1]
-    if found.startswith('"') or (found == '"' and "STRING" not in accepted):
-        return Complaint(place, 'a string ends with `"` on the same line', mend)
-    if found == "--" and not before.strip():
+def _about_brackets(s: Surprise) -> Complaint | None:
+    opened: list[int] = []
+    for piece in re.finditer(r'"[^"]*"|[()]', s.before):
+        if piece.group() == "(":
+            opened.append(piece.start())
+        elif piece.group() == ")" and opened:
+            opened.pop()
+    if opened and "CLOSE" in s.accepted and s.found in ("", ",", ":", "="):
         return Complaint(
-            place,
-            "a line that begins with `--` continues the chain above it, and no chain stands above this line",
-            "begin the line with a node",
-        )
-    if re.search(r"\d\s*,\s*$", before) and found[:1].isdigit():
-        return Complaint(
-            place,
-            "a name must stand after the comma",
-            "write a decimal point as `.`, and separate settings by commas",
-        )
-    if found and not found.isascii() and found[0].isalpha():
-        return Complaint(
-            place, f"`{found}` is not in the alphabet of names", "names are ASCII letters, digits and _"
-        )
-    if not before.strip() and word and word not in FORMS and "STAGE" in accepted | {"STAGE"}:
-        hint = nearest(word, FORMS)
-        if hint:
-            return Complaint(place, f"`{word}` begins no statement", hint)
-    return _unknown_statement(place, found, before, line, word)
-
-
-def _unknown_statement(place: Place, found: str, before: str, line: str, word: str) -> Complaint | None:
-    begins_device = re.match(r"\s*[A-Za-z]\w*\s+[A-Za-z]\w*\s*:", line)
-    if word and word not in FORMS and "--" not in before and not begins_device:
-        hint = nearest(word, FORMS)
-        return Complaint(
-            Place(place.line, line.find(word) + 1, line.find(word) + 1 + len(word), place.source),
-            f"`{word}` begins no statement, and no `--` follows it as after a node",
-            hint or f"write a wire as {CHAIN_FORM}, or begin with {listed(FORMS, 'or')}",
-        )
-    if word == "end" and found == "end":
-        return Complaint(
-            place,
-            "`end` without a `block` above it",
-            "remove it, or begin the block with `block NAME (port)`",
+            s.at(opened[-1], opened[-1] + 1), "this bracket is not closed", "close it with ) on the same line"
         )
     return None
 
 
-def _cause(found: str, accepted: set[str]) -> str:
-    wanted = _wanted(accepted)
-    seen = f"`{found}` was not expected here" if found else "the line ends too early"
-    return f"{seen}; {wanted} can stand here" if wanted else seen
+def _about_blocks(s: Surprise) -> Complaint | None:
+    """A block without its end, an end without its block, and what cannot stand in a block."""
+    source, here = s.place.source, s.place.line
+    first_words = [(n, _kind(_without_comment(source.line(n)))) for n in range(1, len(source.lines) + 1)]
+    block = None
+    for number, kind in first_words[: here - 1]:
+        block = number if kind == "block" else None if kind == "end" else block
+    start = len(s.before) - len(s.before.lstrip())
+    word = s.at(start, start + len(s.kind))
+    if block is None:
+        if s.kind != "end":
+            return None
+        return Complaint(
+            word,
+            "this `end` has no `block` above it",
+            "remove it, or begin the block: block NAME (port, ...)",
+        )
+    at_end = "END" in s.accepted and not s.found and here == len(source.lines)
+    if s.kind not in _NOT_IN_BLOCKS and not at_end:
+        return None
+    ahead = next((kind for _, kind in first_words[here:] if kind in ("block", "end")), "")
+    if s.kind != "block" and ahead == "end":
+        return Complaint(
+            word,
+            f"`{s.kind}` cannot stand in a block, which holds wires, parts, uses and fixes",
+            f"move it out of the block that begins on line {block}",
+        )
+    start = source.line(block).index("block")
+    return Complaint(
+        Place(block, start + 1, start + 6, source), "this block has no `end`", "write end below its last line"
+    )
 
 
-def _wanted(accepted: set[str]) -> str:
-    words = [TERMINALS.get(t, f"`{t.lower()}`") for t in sorted(accepted - _HIDDEN)]
-    return listed(words, "or") if len(words) <= 8 else ""
+def _about_first_word(s: Surprise) -> Complaint | None:
+    """A statement that begins with no word of the language, or with one that is nearly right."""
+    if s.kind not in ("line", "device"):
+        return None
+    start = len(s.before) - len(s.before.lstrip())
+    words = re.findall(rf"{WORD}|\S", s.before + s.after)
+    if not words or not re.fullmatch(WORD, words[0]):
+        return None
+    first = s.at(start, start + len(words[0]))
+    if s.kind == "device":
+        return _about_kind(s, words, first)
+    hint = nearest(words[0], STATEMENTS)
+    if hint and s.found != "--":
+        return Complaint(first, f"`{words[0]}` begins no statement", hint)
+    if s.found == "=":
+        asked = re.match(r"=\s*(?:\(?[VI]_|loop)", s.after)
+        form = f"ask {words[0]} = V_out/V_in" if asked else f"fix {words[0]} = 4k7"
+        return Complaint(
+            first, f"`{words[0]} =` begins no statement", f"write the statement's word first, as in {form}"
+        )
+    if s.found == ":":
+        return _about_colon(words, first)
+    if len(words) > 1 and words[1] in KINDS:
+        return Complaint(
+            s.place,
+            f"the `:` behind `{words[1]}` is missing",
+            f"write {words[0]} {words[1]}: and its terminals",
+        )
+    if len(words) > 1 and re.fullmatch(WORD, words[1]):
+        second = s.before.index(words[1], start + len(words[0])) if words[1] in s.before else len(s.before)
+        return Complaint(
+            s.at(second, second + len(words[1])),
+            f"the `--` between `{words[0]}` and `{words[1]}` is missing",
+            f"write a wire as {words[0]} -- {words[1]} -- ...",
+        )
+    if len(words) == 1:
+        return Complaint(
+            first,
+            f"`{words[0]}` alone is no statement",
+            f"write a wire as {FORMS['chain']}, or begin with {listed(STATEMENTS, 'or')}",
+        )
+    return None
 
 
-def _mend(found: str, accepted: set[str], mend: str) -> str:
-    known: list[str] = []
-    for terminal in ("TERMINAL", "PARAMETER", "REQUIREMENT"):
-        if terminal in accepted:
-            known += TERMINALS[terminal].split(", ")
-    known += [t.lower() for t in accepted if t not in TERMINALS and t.isalpha()]
-    hint = nearest(found, known) if found else ""
-    return f"{hint} {mend}" if hint else mend
+def _about_kind(s: Surprise, words: list[str], first: Place) -> Complaint | None:
+    hint = nearest(words[0], STATEMENTS)
+    if words[1] in KINDS:
+        return None
+    if hint and not nearest(words[1], KINDS):
+        return Complaint(first, f"`{words[0]}` begins no statement", hint)
+    start = s.before.index(words[1], first.column - 1 + len(words[0]))
+    return Complaint(
+        s.at(start, start + len(words[1])),
+        f"`{words[1]}` is not a kind of part",
+        nearest(words[1], KINDS) or choices(KINDS),
+    )
 
 
-__all__ = ["FORMS", "Token", "UnexpectedCharacters", "explain"]
+def _about_colon(words: list[str], first: Place) -> Complaint:
+    name, behind = words[0], words[2] if len(words) > 2 else ""
+    if behind in KINDS:
+        form = f"{name} {behind}: plus node, ..."
+    elif behind in targets.KINDS:
+        form = f"target {name}: {behind} ..."
+    elif behind == "loss":
+        form = f"limit {name}: loss ..."
+    elif re.fullmatch(r"E[0-9]+", behind):
+        form = f"parts {name}: {behind}"
+    else:
+        form = FORMS["device"]
+    return Complaint(first, f"`{name}:` begins no statement", f"write it as {form}")
+
+
+def _plain(s: Surprise) -> Complaint:
+    """Return the complaint that names what was found and what can stand here."""
+    wanted = [TERMINALS.get(t, f"`{t.lower()}`") for t in sorted(s.accepted - _HIDDEN)]
+    seen = f"`{s.found}` was not expected here" if s.found else "the line ends too early"
+    cause = f"{seen}, where {listed(wanted, 'or')} can stand" if 0 < len(wanted) < 9 else seen
+    return Complaint(s.place, cause, f"write {FORMS.get(s.kind, FORMS['chain'])}")
