@@ -16,7 +16,6 @@ from symcirc.nodal import build_system
 from symcirc.ratio import Coefficient, Ratio
 from symcirc.sheet.expression import Expression
 from symcirc.sheet.model import Ask, Sheet, Voltage
-from symcirc.stability.exchanged import exchanged_inputs
 from symcirc.transfer.build import Built, build_function
 from symcirc.transfer.function import TransferFunction, symbols_in
 from symcirc.transfer.signs import sign_remarks
@@ -147,7 +146,12 @@ def derive(
         answers.append(answer)
         remarks += [*found, *sign_remarks(answer.function, posed.sheet.symbols, ask)]
     remarks += _idle_parts(posed, answers)
-    remarks += exchanged_inputs(posed.sheet, build_circuit(posed.sheet), setups)
+    if any(device.kind == "opamp" for device in posed.sheet.devices):
+        from symcirc.stability.exchanged import (
+            exchanged_inputs,
+        )  # late: stages without amplifiers start sooner
+
+        remarks += exchanged_inputs(posed.sheet, build_circuit(posed.sheet), setups)
     return Derivation(posed.sheet, posed.circuit, posed.ties, tuple(answers), tuple(remarks))
 
 

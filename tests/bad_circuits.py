@@ -8,7 +8,11 @@ INVERTER = "in -- R1 -- m -- R2 -- out\nU1 opamp: plus gnd, minus m, drives out\
 H = "ask H = V_out/V_in\n"
 
 CIRCUITS = (
-    Row("hanging node", "in -- R1 -- out -- C1 -- gnd\nout -- R2 -- otu\n" + H, 2, 14, "hangs on `R2` alone", "spelling"),
+    Row(
+        "hanging node",
+        "in -- R1 -- out -- C1 -- gnd\nout -- R2 -- otu\n" + H,
+        2, 14, "hangs on `R2` alone", "spelling",
+    ),
     Row("hanging input", INVERTER.replace("plus gnd", "plus p") + H, 2, 16, "hangs on `U1` alone", "spelling"),
     Row(
         "island",

@@ -185,7 +185,7 @@ def test_a_call_without_a_verb_is_answered_with_a_mend(capsys):
     assert "mend:" in called.err
 
 
-@pytest.mark.parametrize("verb", ["derive", "match"])
+@pytest.mark.parametrize("verb", ["derive", "match", "check"])
 def test_the_help_of_every_verb_holds_an_example_that_runs(verb, capsys, tmp_path):
     called = call(capsys, verb, "--help")
     assert called.status == 0

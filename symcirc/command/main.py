@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 import os
 import sys
 from argparse import Namespace
@@ -54,6 +53,8 @@ def _run(words: Namespace, progress: ProgressLine) -> int:
     except Complaint as complaint:
         progress.clear()
         if words.json:
+            import json
+
             print(json.dumps({"error": complaint.as_json()}))
         print(complaint, file=sys.stderr)
         return MEND

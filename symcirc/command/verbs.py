@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 import sys
 from argparse import Namespace
 from collections.abc import Callable, Iterable
@@ -121,6 +120,21 @@ def match(words: Namespace, progress: ProgressLine) -> int:
     return status
 
 
+def check(words: Namespace, progress: ProgressLine) -> int:
+    """Judge a working against a sheet; status 1 where a line fails, is carried or unread."""
+    from symcirc.derivation import pose, pose_real
+    from symcirc.report.check_text import check_text
+    from symcirc.working.check import check_posed
+
+    posed = (pose_real if words.real else pose)(read_sheet(read_file(words.sheet)))
+    checked = check_posed(posed, read_file(words.working))
+    if words.json:
+        _print_json(checked.as_json(), progress)
+    else:
+        _print_text(check_text(checked), posed.sheet.remarks, progress)
+    return checked.exit_status
+
+
 def _wanted(sheet: Sheet, ask: str | None) -> set[str] | None:
     if ask is None:
         return None
@@ -135,6 +149,8 @@ def _wanted(sheet: Sheet, ask: str | None) -> set[str] | None:
 
 
 def _print_json(answer: dict[str, Any], progress: ProgressLine) -> None:
+    import json
+
     text = json.dumps(answer, ensure_ascii=False, indent=2)
     progress.clear()
     print(text)
@@ -149,4 +165,8 @@ def _print_text(lines: Iterable[str], remarks: Iterable[Remark], progress: Progr
         print(remark, file=sys.stderr)
 
 
-VERBS: dict[str, Callable[[Namespace, ProgressLine], int]] = {"derive": derive, "match": match}
+VERBS: dict[str, Callable[[Namespace, ProgressLine], int]] = {
+    "derive": derive,
+    "match": match,
+    "check": check,
+}

@@ -14,6 +14,7 @@ its standard form, and the design equations for a target.
 
   stagewright derive stage.stage     the transfer function of everything that is asked
   stagewright match  stage.stage     the design equations and part values for the target
+  stagewright check  stage.stage hand.work   whether hand algebra is true of the circuit, line by line
 
 `stagewright VERB --help` shows each verb with an example. SHEET may be - for standard input.
 Exit status: 0 done, 1 the target cannot be met, 2 something to mend, 70 a fault of the program.
@@ -35,6 +36,17 @@ example: R1 of a first-order low-pass
   stagewright match lp.stage
 """
 
+CHECK = """\
+Judge a working, a person's hand algebra, line by line: is it true of the circuit, and does it
+follow from the lines above? `let Vo = V_out` gives a name; a space may stand for a product; a .tex
+file's display equations are read as well.
+
+example: a working with a false line
+  printf 'in -- R1 -- out -- C1 -- gnd\nask H = V_out/V_in\n' > lp.stage
+  printf '(V_in - V_out)/R1 = s C1 V_out\nV_out/V_in = 1/(1 - s R1 C1)\n' > lp.work
+  stagewright check lp.stage lp.work || true
+"""
+
 
 class Words(argparse.ArgumentParser):
     """An argument parser whose complaints are two lines: what is wrong, and what would mend it."""
@@ -52,6 +64,7 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     parser.add_argument("--version", action="version", version=f"stagewright {__version__}")
     verbs = parser.add_subparsers(dest="verb", required=True, metavar="VERB")
     derive = _verb(verbs, "derive", "the transfer function of everything that is asked", DERIVE)
+    derive.add_argument("--ask", metavar="NAME", help="only this ask")
     form = derive.add_mutually_exclusive_group()
     form.add_argument("--json", action="store_true", help="print one JSON object")
     form.add_argument("--latex", action="store_true", help="print LaTeX")
@@ -66,9 +79,14 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     derive.add_argument("--most", type=_count, metavar="N", help="expand an answer of up to N products")
     derive.add_argument("--real", action="store_true", help="count the amplifiers' gain and gbw")
     match = _verb(verbs, "match", "the design equations and part values for the target", MATCH)
+    match.add_argument("--ask", metavar="NAME", help="the target of this ask")
     form = match.add_mutually_exclusive_group()
     form.add_argument("--json", action="store_true", help="print one JSON object")
     form.add_argument("--latex", action="store_true", help="print LaTeX")
+    check = _verb(verbs, "check", "whether hand algebra is true of the circuit", CHECK)
+    check.add_argument("working", metavar="WORKING", help="the working, or - for standard input")
+    check.add_argument("--json", action="store_true", help="print one JSON object")
+    check.add_argument("--real", action="store_true", help="count the amplifiers' gain and gbw")
     return parser.parse_args(arguments)
 
 
@@ -83,5 +101,4 @@ def _verb(verbs: argparse._SubParsersAction[Words], name: str, summary: str, des
         name, help=summary, description=description, formatter_class=argparse.RawDescriptionHelpFormatter
     )
     verb.add_argument("sheet", metavar="SHEET", help="the stage sheet, or - for standard input")
-    verb.add_argument("--ask", metavar="NAME", help="only this ask")
     return verb
