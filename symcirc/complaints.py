@@ -153,7 +153,9 @@ def nearest(word: str, known: Iterable[str]) -> str:
 
 
 def _closest(word: str, candidates: list[str]) -> list[str]:
-    cutoff = 0.6 if len(word) > 2 else 0.5  # R1 for R2
+    cutoff = 0.6
+    if len(word) < 3:  # R1 for R2, and not C2 for R2
+        cutoff, candidates = 0.5, [c for c in candidates if c[0].lower() == word[:1].lower()]
     close = difflib.get_close_matches(word, candidates, n=3, cutoff=cutoff)
     likeness = {c: difflib.SequenceMatcher(None, c, word).ratio() for c in close}
     return [c for c in close if likeness[c] > max(likeness.values()) - 0.1]

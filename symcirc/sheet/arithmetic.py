@@ -56,7 +56,8 @@ class ExpressionReader(Transformer_NonRecursive[Token, Any]):
         terms = [self.expression(children[0])]
         for sign, child in zip(children[1::2], children[2::2], strict=True):
             term = self.expression(child)
-            terms.append(Negative(term, self.place(sign)) if sign.type == "MINUS" else term)
+            minus = sign.type == "MINUS"
+            terms.append(Negative(term, _from_to(self.place(sign), term)) if minus else term)
         return Sum(tuple(terms), _from_to(terms[0].place, terms[-1]))
 
     def product(self, children: Children) -> Expression:

@@ -48,8 +48,15 @@ def find_block(use: st.UseLine, blocks: Mapping[str, st.Block]) -> st.Block:
     return block
 
 
-def check_size(circuit: Iterable[st.CircuitStatement], blocks: Mapping[str, st.Block]) -> None:
-    """Count what the uses will make, before it is made.
+def find_unused(circuit: Iterable[st.CircuitStatement], blocks: Mapping[str, st.Block]) -> list[st.Block]:
+    """Return the blocks that neither the sheet nor another block uses."""
+    lines = [*circuit, *(s for block in blocks.values() for s in block.body)]
+    used = {s.block.text for s in lines if isinstance(s, st.UseLine)}
+    return [block for name, block in blocks.items() if name not in used]
+
+
+def check_size(statements: Iterable[st.CircuitStatement], blocks: Mapping[str, st.Block]) -> None:
+    """Count what statements and their uses will make, before it is made.
 
     Raises Complaint for more than 50,000 parts and fixes, and for a block that uses itself.
     """
@@ -57,7 +64,7 @@ def check_size(circuit: Iterable[st.CircuitStatement], blocks: Mapping[str, st.B
     for block in blocks.values():
         _measure(block, blocks, sizes)
     total = 0
-    for statement in circuit:
+    for statement in statements:
         total += _statement_size(statement, sizes)
         if total > MOST_PIECES:
             raise Complaint(

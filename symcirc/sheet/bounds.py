@@ -10,6 +10,8 @@ LARGEST_FILE = 1_000_000
 DEEPEST_BRACKETS = 100
 #: Words and signs in a text; a ladder of 5,000 sections with all its values fixed has 100,000.
 MOST_WORDS = 120_000
+#: Signs of arithmetic in a text.
+MOST_OPERATORS = 20_000
 #: Square roots, pi, dB and rad in a text: what takes time to be kept exact.
 MOST_IRRATIONAL = 1_000
 #: Characters of a name (and of the names that blocks in blocks make).
@@ -23,7 +25,9 @@ _PIECES = re.compile(
   | (?P<close> \) )
   | (?P<irrational> \b (?: sqrt | pi | dB | rad ) \b )
   | (?P<word> \w++ )
-  | "[^"\n]*" | -- | [^\s\w]
+  | "[^"\n]*" | --
+  | (?P<operator> [-+*/^] )
+  | [^\s\w]
     """,
     re.VERBOSE,
 )
@@ -40,30 +44,27 @@ def check_bounds(source: Source) -> None:
     """
     if len(source.text) > LARGEST_FILE:
         raise refuse_length(source)
-    depth = words = irrational = 0
+    depth = words = operators = irrational = 0
     for piece in _PIECES.finditer(source.text):
-        match piece.lastgroup:
-            case "comment":
-                continue
-            case "end":
-                depth = 0
-                continue
-            case "open":
-                depth += 1
-            case "close":
-                depth -= 1
-            case "irrational":
-                irrational += 1
-            case "word" if piece.end() - piece.start() > LONGEST_NAME:
-                raise _beyond(
-                    source, piece, f"this word has more than {LONGEST_NAME} characters", "shorten it"
-                )
+        kind = piece.lastgroup
+        if kind == "comment":
+            continue
+        if kind == "end":
+            depth = 0
+            continue
         words += 1
+        depth += (kind == "open") - (kind == "close")
+        operators += kind == "operator"
+        irrational += kind == "irrational"
+        if kind == "word" and piece.end() - piece.start() > LONGEST_NAME:
+            raise _beyond(source, piece, f"this word has more than {LONGEST_NAME} characters", "shorten it")
         if depth > DEEPEST_BRACKETS:
             cause = f"brackets are nested more than {DEEPEST_BRACKETS} deep here"
             raise _beyond(source, piece, cause, "give inner parts names of their own")
-        if irrational > MOST_IRRATIONAL:
-            cause = f"this text has more than {MOST_IRRATIONAL:,} square roots, pi and dB"
+        if irrational > MOST_IRRATIONAL or operators > MOST_OPERATORS:
+            too_many = "signs of arithmetic" if operators > MOST_OPERATORS else "square roots, pi, dB and rad"
+            most = MOST_OPERATORS if operators > MOST_OPERATORS else MOST_IRRATIONAL
+            cause = f"this text has more than {most:,} {too_many}"
             raise _beyond(source, piece, cause, "write plain numbers, or names for what returns")
         if words > MOST_WORDS:
             cause = f"this text has more than {MOST_WORDS:,} words and signs"

@@ -11,7 +11,7 @@ from dataclasses import dataclass, field
 
 from symcirc.complaints import Complaint, Place, Remark
 from symcirc.sheet import statements as st
-from symcirc.sheet.blocks import check_size, collect_blocks, find_block
+from symcirc.sheet.blocks import check_size, collect_blocks, find_block, find_unused
 from symcirc.sheet.bounds import LONGEST_NAME
 from symcirc.sheet.chains import check_chain, odd_node
 from symcirc.sheet.devices import build_device
@@ -63,7 +63,6 @@ class Flat:
     node_owners: dict[str, Scope] = field(default_factory=dict)
     port_names: dict[str, str] = field(default_factory=dict)
     port_nodes: set[str] = field(default_factory=set)
-    used_blocks: set[str] = field(default_factory=set)
     places: dict[str, Place] = field(default_factory=dict)
     remarks: list[Remark] = field(default_factory=list)
 
@@ -77,17 +76,17 @@ def expand(statements: Iterable[st.Statement]) -> Flat:
     statements = tuple(statements)
     blocks = collect_blocks(statements)
     circuit = [s for s in statements if isinstance(s, st.CircuitStatement)]
-    check_size(circuit, blocks)
+    unused = find_unused(circuit, blocks)
+    check_size([*circuit, *(s for block in unused for s in block.body)], blocks)
     flat = Flat()
     _place(flat, circuit, TOP, blocks)
-    for name in flat.port_names.keys() & flat.node_places.keys():
+    misnamed = flat.port_names.keys() & flat.node_places.keys()
+    if misnamed:
+        name = min(misnamed, key=flat.node_places.__getitem__)
         raise refuse_port(name, flat.port_names[name], flat.node_places[name])
-    for block in blocks.values():
-        if block.name.text not in flat.used_blocks:  # its slips are found although nothing uses it
-            aside = Flat()
-            _place(aside, block.body, Scope("", "", {port.text: port.text for port in block.ports}), blocks)
-            flat.used_blocks |= aside.used_blocks
-            flat.remarks.append(Remark(block.name.place, f"block `{block.name.text}` is never used"))
+    for block in unused:  # its slips are found although nothing uses it
+        _place(Flat(), block.body, Scope("", "", {port.text: port.text for port in block.ports}), blocks)
+        flat.remarks.append(Remark(block.name.place, f"block `{block.name.text}` is never used"))
     return flat
 
 
@@ -126,7 +125,6 @@ def _enter(flat: Flat, use: st.UseLine, scope: Scope, block: st.Block) -> Scope:
             f"the names inside `{label[:20]}...` grow beyond {LONGEST_NAME} characters",
             "use shorter names, or fewer blocks in blocks",
         )
-    flat.used_blocks.add(block.name.text)
     nodes = [_node(flat, node, scope) for node in use.nodes]
     flat.port_nodes.update(nodes)
     joined = {port.text: node for port, node in zip(block.ports, nodes, strict=True)}

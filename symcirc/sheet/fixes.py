@@ -20,10 +20,9 @@ from symcirc.sheet.units import check_unit, in_base_units
 
 @dataclass(frozen=True)
 class Settled:
-    """The fixes of a sheet, the numbers of all names that have one, sizes of ties, trials of all symbols."""
+    """The fixes of a sheet, the sizes of its ties, and the trials of all its symbols."""
 
     fixes: dict[str, Fix] = field(default_factory=dict)
-    numbers: dict[str, sympy.Expr] = field(default_factory=dict)
     sizes: dict[str, Size] = field(default_factory=dict)
     trials: dict[str, Trial] = field(default_factory=dict)
 
@@ -107,9 +106,10 @@ def _settle_ties(settled: Settled, namespace: Namespace) -> None:
     for name, symbol in namespace.symbols.items():
         number = fixes[name].number if name in fixes else None
         if number is not None:
-            settled.numbers[name], trials[name] = number, known(number)
+            trials[name] = known(number)
         elif name not in fixes:
-            trials[name] = free(name, positive=-1 in namespace.refused_signs(symbol))
+            positive = -1 in namespace.refused_signs(symbol) and not namespace.is_general(symbol)
+            trials[name] = free(name, positive=positive)
     with_s = {"s"}
     for name in order:
         symbol, expression = namespace.symbols[name], fixes[name].expression
@@ -121,8 +121,6 @@ def _settle_ties(settled: Settled, namespace: Namespace) -> None:
         sizes[name] = check_size(expression, sizes)
         trials[name] = try_out(expression, trials)
         _check_trial(trials[name], symbol, namespace, expression.place)
-        if trials[name].is_known:
-            settled.numbers[name] = exact_number(expression, settled.numbers)
 
 
 def _no_s_here(symbol: Symbol, name: Name) -> Complaint:
@@ -137,6 +135,8 @@ def _no_s_here(symbol: Symbol, name: Name) -> Complaint:
 def _check_trial(trial: Trial, symbol: Symbol, namespace: Namespace, place: Place) -> None:
     refused = namespace.refused_signs(symbol)
     sign = 0 if trial.is_zero else trial.sign
+    if sign == -1 and namespace.is_general(symbol) and not trial.is_known:
+        return  # an impedance in names may be a negative one
     if sign is not None and sign in refused:
         raise _wrong_sign(symbol, sign, refused, place)
     if trial.is_known and not trial.in_bounds:

@@ -6,13 +6,13 @@ from collections.abc import Mapping
 
 from symcirc.complaints import Complaint, Place, choices, nearest
 from symcirc.sheet import statements as st
-from symcirc.sheet.exact import sign_of
 from symcirc.sheet.expression import Name
 from symcirc.sheet.fixes import Settled
 from symcirc.sheet.formulas import check_names
 from symcirc.sheet.model import Buyable, Limit, Symbol, Value
+from symcirc.sheet.trial import try_out
 from symcirc.sheet.units import EXAMPLES
-from symcirc.sheet.words import check_word, check_word_unit, fixed_number, refuse_empty
+from symcirc.sheet.words import check_word, check_word_unit, refuse_empty
 
 SERIES = ("E3", "E6", "E12", "E24", "E48", "E96", "E192")
 #: The dimension of each kind of part that can be bought, and the code letters that it cannot have.
@@ -77,8 +77,8 @@ def read_buyables(
 
 def _check_tolerance(value: Value, settled: Settled) -> None:
     check_word_unit("tolerance", value)
-    number = fixed_number(value, settled)
-    if number is None or not 0 <= number < 100:
+    trial = try_out(value.expression, settled.trials)
+    if not 0 <= trial.value < 100:
         raise Complaint(value.place, "a tolerance lies between 0 % and 100 %", "write: E96 1 %")
 
 
@@ -92,8 +92,8 @@ def _check_bought(kind: str, value: Value, symbols: Mapping[str, Symbol], settle
             f"write a value such as {EXAMPLES[dimension]}",
         )
     check_names(value.expression, symbols, s_allowed=False)
-    number = fixed_number(value, settled)
-    if number is None:
+    trial = try_out(value.expression, settled.trials)
+    if not trial.is_known:
         raise Complaint(value.place, "a range of parts is given in numbers", "fix the names in it")
-    if sign_of(number) < 1:
+    if trial.is_zero or trial.sign == -1:
         raise Complaint(value.place, "this must be greater than zero", "give a positive value")

@@ -66,8 +66,8 @@ class Namespace:
         return (-1, 0) if symbol.dimension == "Hz" else (0,)
 
     def _add(self, symbol: Symbol) -> None:
-        if symbol.name in self.symbols:
-            first = self.symbols[symbol.name]
+        first = self.symbols.get(symbol.name) or self._devices.get(symbol.name)
+        if first is not None:
             raise Complaint(
                 max(symbol.place, first.place),
                 f"`{symbol.label}` and `{first.label}` have one name in formulas, {symbol.name}",
@@ -102,7 +102,7 @@ class Namespace:
     def _bring_in(self, setting: FlatSetting) -> None:
         """Declare the parts inside a Z or Y: ``fix Y3 = s*C3 + 1/R3`` brings in C3 and R3."""
         target = self.symbols.get(self.name(setting.name, setting))
-        if target is None or target.role != "part" or setting.name.text[0] not in "ZY":
+        if target is None or not self.is_general(target):
             return
         for name in names(setting.value.expression):
             flat_name = self.name(name, setting)

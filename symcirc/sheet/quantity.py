@@ -37,6 +37,8 @@ UNITS = {
 BARE_UNITS = {"dB": "dB", "%": "%", "deg": "deg", "\N{DEGREE SIGN}": "deg"}
 #: The letters of IEC 60062 that stand in the place of the decimal point.
 CODE_LETTERS = {"R": 0, "F": 0, "K": 3} | {p: power for p, power in PREFIXES.items() if p not in ("", "f")}
+#: A value code without its first digits.
+CODE_TAIL = r"[RFKkMGTmunp\u00B5\u03BC][0-9]+"
 #: Units that people write out in full.
 IN_WORDS = {
     "ohms": "ohm",
@@ -70,6 +72,8 @@ def read_number(text: str, place: Place) -> Fraction:
     >>> read_number("2.2e-9", Place(1, 1, 7, Source("a.stage", "2.2e-9")))
     Fraction(11, 5000000000)
     """
+    if len(text) <= 30 and text.isdecimal():
+        return Fraction(int(text))
     if len(text) > LONGEST_NUMBER:
         raise _too_long(place)
     mantissa, _, power = text.lower().partition("e")
@@ -151,7 +155,7 @@ def _unknown_unit(text: str, number: str, glued: bool) -> tuple[str, str]:
             f"`{text}` alone is not a unit, and a prefix alone must be glued to its digits",
             f"write {codes}{with_unit}",
         )
-    code = re.match(r"[RFKkMGTmunp\u00B5\u03BC][0-9]+", text)
+    code = re.match(CODE_TAIL, text)
     if glued and code:
         return (
             f"`{number}{text}` is neither a value code nor a number with a unit",

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
 from fractions import Fraction
 from typing import Any, NoReturn
@@ -13,7 +14,7 @@ from symcirc.sheet import statements as st
 from symcirc.sheet.arithmetic import Children, ExpressionReader
 from symcirc.sheet.expression import Expression, Name, Negative, Number
 from symcirc.sheet.model import Value
-from symcirc.sheet.quantity import in_range, read_code, read_number, read_unit
+from symcirc.sheet.quantity import CODE_TAIL, LONGEST_NUMBER, in_range, read_code, read_number, read_unit
 
 
 class SheetReader(ExpressionReader):
@@ -34,9 +35,24 @@ class SheetReader(ExpressionReader):
         if unit is None:
             return Value(expression, None, expression.place)
         number = expression.operand if isinstance(expression, Negative) else expression
+        self._refuse_code_in_arithmetic(unit)
         if not isinstance(number, Number):
             raise _unit_behind_expression(self.name(unit), expression)
         return self._measured(expression is not number, number, unit, expression.place)
+
+    def _refuse_code_in_arithmetic(self, unit: Token) -> None:
+        """Raise Complaint for a value code behind a sign, which is read as a number with an odd unit."""
+        place = self.place(unit)
+        start = max(0, place.end - 2 * LONGEST_NUMBER)
+        code = re.search(
+            rf"(?<![\w.])[0-9]+{CODE_TAIL}$", self.source.line(place.line)[start : place.end - 1]
+        )
+        if code:
+            raise Complaint(
+                replace(place, column=start + code.start() + 1),
+                f"`{code.group()}` is a value code, and a value code stands alone, without a sign",
+                "write plain numbers in arithmetic, in SI base units, as in -4700",
+            )
 
     def measure(self, children: Children) -> Value:
         """A number with or without a unit, or a code."""

@@ -235,7 +235,7 @@ VALUES = (
     ),
     Slip(
         "fix target",
-        rf"=.*(?P<before>\b{WORD}|[0-9.]+|\))[ \t]*¦(?P<at>{WORD})",
+        rf"=.*(?<![\w.])(?P<before>{WORD}|[0-9.]+|\))[ \t]*¦(?P<at>{WORD})",
         "a sign is missing before `{at}`",
         "write a product with *, as in {before}*{at}",
     ),

@@ -50,7 +50,7 @@ ASKS = (
     ),
     Slip(
         "ask",
-        "with\b.*=[ \t]*¦(?P<at>\\S*)",
+        r"with\b.*=[ \t]*¦(?P<at>\S*)",
         "a drive can only be set to 0",
         "write with V_in = 0 or with I_in = 0",
     ),
@@ -59,7 +59,7 @@ ASKS = (
     ),
     Slip(
         "ask",
-        "with\b.*,[ \t]*¦",
+        r"with\b.*,[ \t]*¦",
         "the condition behind the comma is missing",
         "write one, or remove the comma",
     ),
@@ -89,7 +89,7 @@ ASKS = (
     ),
     Slip(
         "ask",
-        r"[=/(-][ \t]*¦(?P<at>i_?\(?(?P<node>[A-Za-z]\w*)\)?)(?<!in)",
+        r"[=/(-][ \t]*¦(?P<at>i_(?P<node>[A-Za-z]\w*))",
         "`{at}` is not a voltage or a current",
         "write I_{node}",
     ),
@@ -180,7 +180,7 @@ TARGETS = (
         "no comma stands between two edges",
         "write edges 900 Hz 1.1 kHz",
     ),
-    Slip("target", "edges[ \t]+[^,]+¦", "`edges` takes two plain values", "write edges 900 Hz 1.1 kHz"),
+    Slip("target", "edges[ \t]+[^,]*¦", "`edges` takes two plain values", "write edges 900 Hz 1.1 kHz"),
     Slip("target", "meet[ \t]*¦", "the word `limits` is missing behind `meet`", "write meet limits"),
     Slip(
         "target",
@@ -246,8 +246,8 @@ LIMITS = (
         "write from 62 Hz to 2 kHz, below 19 Hz, or above 5 kHz",
     ),
     Slip("limit parts", "from[ \t]*¦", "the value behind `from` is missing", "write from LOW to HIGH"),
-    Slip("limit parts", "from[ \t].*¦", "the word `to` is missing behind `from`", "write from LOW to HIGH"),
     Slip("limit parts", r"\bto[ \t]*¦", "the value behind `to` is missing", "write from LOW to HIGH"),
+    Slip("limit parts", "from[ \t].*¦", "the word `to` is missing behind `from`", "write from LOW to HIGH"),
     Slip(
         "limit",
         "(?P<word>below|above)[ \t]*¦",

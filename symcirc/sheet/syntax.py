@@ -64,6 +64,7 @@ TERMINALS = {
 }
 _NOT_IN_BLOCKS = ("stage", "block", "choose", "solve", "ask", "target", "limit", "parts", "note")
 _HIDDEN = {"NODE_WORD", "$END"}
+_BLOCK_WORD = re.compile(r"[ \t]*(block|end)\b(?![ \t]*--)")
 #: So much of a line on either side of the place is looked at.
 _WINDOW = 300
 
@@ -83,11 +84,6 @@ class Surprise:
     after: str
     kind: str
     accepted: frozenset[str]
-
-    @property
-    def at_start(self) -> bool:
-        """Tell whether nothing stands before the place in its line."""
-        return not self.before.strip()
 
     def at(self, start: int, end: int) -> Place:
         """Return the place of columns of the line, counted from 0."""
@@ -218,10 +214,14 @@ def _about_brackets(s: Surprise) -> Complaint | None:
 def _about_blocks(s: Surprise) -> Complaint | None:
     """A block without its end, an end without its block, and what cannot stand in a block."""
     source, here = s.place.source, s.place.line
-    first_words = [(n, _kind(_without_comment(source.line(n)))) for n in range(1, len(source.lines) + 1)]
-    block = None
-    for number, kind in first_words[: here - 1]:
-        block = number if kind == "block" else None if kind == "end" else block
+    block, ahead = None, ""
+    for number, line in enumerate(source.lines, 1):
+        first = _BLOCK_WORD.match(line)
+        if first and number < here:
+            block = number if first.group(1) == "block" else None
+        elif first and number > here:
+            ahead = first.group(1)
+            break
     start = len(s.before) - len(s.before.lstrip())
     word = s.at(start, start + len(s.kind))
     if block is None:
@@ -235,7 +235,6 @@ def _about_blocks(s: Surprise) -> Complaint | None:
     at_end = "END" in s.accepted and not s.found and here == len(source.lines)
     if s.kind not in _NOT_IN_BLOCKS and not at_end:
         return None
-    ahead = next((kind for _, kind in first_words[here:] if kind in ("block", "end")), "")
     if s.kind != "block" and ahead == "end":
         return Complaint(
             word,
@@ -298,7 +297,7 @@ def _about_kind(s: Surprise, words: list[str], first: Place) -> Complaint | None
         return None
     if hint and not nearest(words[1], KINDS):
         return Complaint(first, f"`{words[0]}` begins no statement", hint)
-    start = s.before.index(words[1], first.column - 1 + len(words[0]))
+    start = (s.before + s.after).index(words[1], first.column - 1 + len(words[0]))
     return Complaint(
         s.at(start, start + len(words[1])),
         f"`{words[1]}` is not a kind of part",

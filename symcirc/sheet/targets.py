@@ -12,7 +12,7 @@ from symcirc.sheet.formulas import check_names, check_size
 from symcirc.sheet.limits import known_ask
 from symcirc.sheet.model import Symbol, Target, Value
 from symcirc.sheet.trial import try_out
-from symcirc.sheet.words import EXAMPLES, check_word, fixed_number, read_order, refuse_empty
+from symcirc.sheet.words import EXAMPLES, check_word, read_order, refuse_empty
 
 KINDS = ("lowpass", "highpass", "bandpass", "bandstop", "allpass")
 #: Each family with the words it needs besides its order and its edge.
@@ -208,7 +208,7 @@ def _check_complete(words: Mapping[str, Value], line: st.ShapeLine, family: str 
 
 def _check_together(words: Mapping[str, Value], family: str | None, settled: Settled) -> None:
     """Raise Complaint where words fit one by one, and not together."""
-    if family is None and fixed_number(words["order"], settled) != 2:
+    if family is None and try_out(words["order"].expression, {}).whole != 2:
         raise Complaint(
             words["order"].place,
             "f0 and q describe order 2",

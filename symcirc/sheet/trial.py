@@ -60,6 +60,13 @@ class Trial:
         return bool(abs(self.value) <= _MARGIN * self.error)
 
     @property
+    def whole(self) -> int | None:
+        """The whole number that the value is, or None where it is another, or not known."""
+        nearest = int(_CONTEXT.nint(self.value))
+        is_whole = self.is_known and abs(self.value - nearest) <= _MARGIN * self.error
+        return nearest if is_whole else None
+
+    @property
     def in_bounds(self) -> bool:
         """Tell whether the value is 0, or of a size from 1e-30 to 1e30."""
         return self.is_zero or bool(1 <= abs(self.value) * 10**30 <= 10**60)

@@ -6,11 +6,8 @@ from collections.abc import Mapping
 from dataclasses import replace
 from fractions import Fraction
 
-import sympy
-
 from symcirc.complaints import Complaint, listed
-from symcirc.sheet.exact import exact_number, sign_of
-from symcirc.sheet.expression import Number, names
+from symcirc.sheet.expression import Expression, Name, Negative, Number, Product, Reciprocal, Sum
 from symcirc.sheet.fixes import Settled
 from symcirc.sheet.formulas import check_names, check_size
 from symcirc.sheet.model import Symbol, Value
@@ -73,7 +70,7 @@ def check_word(word: str, value: Value, symbols: Mapping[str, Symbol], settled: 
     check_names(value.expression, symbols, s_allowed=False)
     check_size(value.expression, settled.sizes)
     trial = try_out(value.expression, settled.trials)
-    if word == "loss" or (word == "gain" and value.unit == "dB"):
+    if word in ("loss", "order") or (word == "gain" and value.unit == "dB"):
         return
     if trial.is_zero or trial.sign == -1:
         mend = (
@@ -84,30 +81,32 @@ def check_word(word: str, value: Value, symbols: Mapping[str, Symbol], settled: 
         raise Complaint(value.place, f"`{word}` must be greater than zero", mend)
 
 
-def fixed_number(value: Value, settled: Settled) -> sympy.Expr | None:
-    """Return the exact number of a value, a frequency in hertz, or None where a name in it has no number."""
-    if not all(name.text == "pi" or name.text in settled.numbers for name in names(value.expression)):
-        return None
-    number = exact_number(value.expression, settled.numbers)
-    return number / (2 * sympy.pi) if value.unit == "rad/s" else number
-
-
 def read_order(value: Value, settled: Settled) -> Value:
     """Return an order as a plain number; raises Complaint unless it is whole and from 1 to 20."""
-    number = fixed_number(value, settled)
-    if number is None or not number.is_Integer or number < 1:
+    order = try_out(value.expression, settled.trials).whole
+    if order is None or order < 1:
         raise Complaint(value.place, "an order is a whole number from 1", "write: order 2")
-    if number > HIGHEST_ORDER:
+    if order > HIGHEST_ORDER:
         raise Complaint(
             value.place,
             f"orders above {HIGHEST_ORDER} are refused",
             "split the response into several cascades",
         )
-    return replace(value, expression=Number(Fraction(int(number)), value.expression.place))
+    return replace(value, expression=Number(Fraction(order), value.expression.place))
 
 
 def refuse_empty(low: Value, high: Value, settled: Settled) -> None:
-    """Raise Complaint where a range does not end above its beginning."""
-    first, last = fixed_number(low, settled), fixed_number(high, settled)
-    if first is not None and last is not None and sign_of(last - first) < 1:
+    """Raise Complaint where a range, of which both ends have a number, does not end above its beginning."""
+    length = Sum((_in_hertz(high), Negative(_in_hertz(low), low.place)), low.place)
+    trial = try_out(length, settled.trials)
+    if trial.is_known and (trial.is_zero or trial.sign == -1):
         raise Complaint(high.place, "the range ends before it begins", "write the lower value first")
+
+
+def _in_hertz(value: Value) -> Expression:
+    """Return a value as it is, and a frequency in rad/s divided by 2 pi."""
+    if value.unit != "rad/s":
+        return value.expression
+    place = value.place
+    turn = Product((Number(Fraction(2), place), Name("pi", place)), place)
+    return Product((value.expression, Reciprocal(turn, place)), place)
