@@ -25,12 +25,15 @@ from symcirc.trees.count import count
 from symcirc.trees.diagram import Diagram
 from symcirc.trees.evaluate import response
 from symcirc.trees.expand import expanded, symbols
+from symcirc.trees.frontier import TooManyStates
 from symcirc.witness.agree import Evidence, confirm, confirm_values
 
 Progress = Callable[[str], None]
 
 #: Answers with more products than this are not expanded unless it is asked for.
 MOST_PRODUCTS = 20_000
+#: A decision diagram larger than this is given up: some gigabytes of memory and some tens of seconds.
+MOST_STATES = 8_000_000
 #: Elimination is the second symbolic way where it is cheap: with no more products and nodes than these it takes
 #: some tens of milliseconds, however the circuit is connected.
 CHEAP_PRODUCTS, CHEAP_NODES = 2_000, 24
@@ -155,12 +158,24 @@ def derive(
     return Derivation(posed.sheet, posed.circuit, posed.ties, tuple(answers), tuple(remarks))
 
 
+def _determinants(posed: Posed, setup: Setup) -> Diagram:
+    try:
+        return determinants(posed.circuit, setup, MOST_STATES)
+    except TooManyStates:
+        raise Complaint(
+            setup.place,
+            f"the circuit is too densely connected for an exact `{setup.ask}`: its decision diagram would have more "
+            f"than {MOST_STATES:,} states",
+            "ask about a smaller piece of it, or one with fewer paths beside each other",
+        ) from None
+
+
 def solved_diagram(posed: Posed, setup: Setup) -> Diagram:
     """Return numerator and denominator of an ask as a decision diagram, products not yet collected.
 
     Raises Complaint where the equations have no unique solution, or what stands under the line is always zero.
     """
-    diagram = determinants(posed.circuit, setup)
+    diagram = _determinants(posed, setup)
     drive = setup.drive
     own = (
         Voltage(drive.plus, drive.minus, setup.under.place)
@@ -168,9 +183,7 @@ def solved_diagram(posed: Posed, setup: Setup) -> Diagram:
         else setup.under
     )
     if setup.under != own:  # two ratios over one determinant, which must not be zero itself
-        _require_solution(
-            posed, replace(setup, under=own), determinants(posed.circuit, replace(setup, under=own))
-        )
+        _require_solution(posed, replace(setup, under=own), _determinants(posed, replace(setup, under=own)))
         if not collected(diagram).roots[1]:
             raise Complaint(
                 setup.under.place,

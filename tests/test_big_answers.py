@@ -205,3 +205,10 @@ def test_a_structural_determinant_that_is_zero_as_algebra_is_refused(derived):
     called = derived(text, "--json")
     assert called.status == 2
     assert derived(text, "--terms", "--json").status == 2
+
+
+def test_a_circuit_too_dense_for_an_exact_answer_is_refused_and_not_waited_for(derived, monkeypatch):
+    monkeypatch.setattr(symcirc.derivation, "MOST_STATES", 30)
+    called = derived(ladder(12), "--terms")
+    assert called.status == 2
+    assert "too densely connected" in called.err
