@@ -16,9 +16,9 @@ from typing import TypeVar
 T = TypeVar("T")
 
 #: A word longer than this is shown by its beginning only.
-LONGEST_WORD = 60
-#: Among more words than this none is offered: the search would take too long.
-MOST_OFFERED = 2_000
+LONGEST_SHOWN = 200
+#: A word longer than this has no near ones, and among more words than this none is near: a search takes time.
+LONGEST_COMPARED, MOST_COMPARED = 40, 2_000
 
 
 @dataclass(frozen=True)
@@ -93,7 +93,7 @@ class Complaint(Exception):
 
 
 def _clipped(sentence: str) -> str:
-    return re.sub(rf"(\S{{{LONGEST_WORD}}})\S+", r"\1...", sentence)
+    return re.sub(rf"(\S{{{LONGEST_SHOWN}}})\S+", r"\1...", sentence)
 
 
 class Complaints:
@@ -145,7 +145,7 @@ def nearest(word: str, known: Iterable[str]) -> str:
     ''
     """
     candidates = sorted(set(known) - {word})
-    if len(candidates) > MOST_OFFERED or len(word) > LONGEST_WORD:
+    if len(candidates) > MOST_COMPARED or len(word) > LONGEST_COMPARED:
         return ""
     folded = [c for c in candidates if c.lower() == word.lower()]
     close = folded or _closest(word, candidates)

@@ -4,6 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Callable, Container, Iterator, Mapping
 from dataclasses import dataclass, replace
+from typing import cast
+
+from sympy.polys.rings import PolyElement
 
 from symcirc.circuit import build_circuit, build_setup
 from symcirc.circuit.amplifier import gain_symbol, loop_gains, real_circuit
@@ -202,7 +205,9 @@ def _require_solution(posed: Posed, setup: Setup, diagram: Diagram) -> None:
 
 def _big_answer(posed: Posed, ask: Ask, setup: Setup, diagram: Diagram) -> BigAnswer:
     def value(known: Mapping[str, complex], s: complex) -> complex:
-        return response(diagram, known, s)  # type: ignore[arg-type]  # a tied value may be complex
+        return response(
+            diagram, cast(Mapping[str, float], known), s
+        )  # a tied value may be complex; it serves
 
     evidence = confirm_values(posed.circuit, setup, posed.ties, value)
     loop = gain_symbol(setup.drive.amplifier) if isinstance(setup.drive, LoopDrive) else None
@@ -246,11 +251,11 @@ def _written(function: TransferFunction) -> tuple[object, ...]:
     """Return a function in a form that does not depend on which symbols its ring holds besides."""
     gens = function.ring.symbols
 
-    def terms(coefficients: tuple[object, ...]) -> list[object]:
+    def terms(coefficients: tuple[PolyElement, ...]) -> list[object]:
         return [
             {
                 tuple((str(gens[k]), e) for k, e in enumerate(monomial) if e): number
-                for monomial, number in coefficient.terms()  # type: ignore[attr-defined]
+                for monomial, number in coefficient.terms()
             }
             for coefficient in coefficients
         ]

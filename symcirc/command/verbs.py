@@ -16,7 +16,7 @@ if TYPE_CHECKING:
     from symcirc.derivation import Posed
 
 
-def read_file(path: str) -> Source:
+def read_file(path: str, what: str = "stage sheet", suffix: str = ".stage") -> Source:
     """Return the text of a file, or of standard input for ``-``; raises Complaint where it cannot be read."""
     if path == "-":
         return decode(sys.stdin.buffer.read(), "standard input")
@@ -25,9 +25,9 @@ def read_file(path: str) -> Source:
     except OSError as error:
         nowhere = Place(1, 1, 2, Source(path, ""))
         folder = Path(path).parent
-        sheets = [str(p) for p in folder.glob("*.stage")] if folder.is_dir() else []
+        sheets = [str(p) for p in folder.glob(f"*{suffix}")] if folder.is_dir() else []
         reason = (error.strerror or "it cannot be read").lower()
-        mend = nearest(path, sheets) or "give the path of a stage sheet, or - for standard input"
+        mend = nearest(path, sheets) or f"give the path of a {what}, or - for standard input"
         raise Complaint(nowhere, f"the file cannot be read: {reason}", mend) from None
     return decode(data, path)
 
@@ -127,7 +127,7 @@ def check(words: Namespace, progress: ProgressLine) -> int:
     from symcirc.working.check import check_posed
 
     posed = (pose_real if words.real else pose)(read_sheet(read_file(words.sheet)))
-    checked = check_posed(posed, read_file(words.working))
+    checked = check_posed(posed, read_file(words.working, "working", ".work"))
     if words.json:
         _print_json(checked.as_json(), progress)
     else:

@@ -27,11 +27,14 @@ def check_order(problem: Problem) -> None:
     """Refuse a stage and a target of unlike order."""
     stage, target = problem.function.order, len(problem.target_denominator) - 1
     if stage != target:
+        more = stage > target
+        cancels = ", and no factor of it cancels for all values of its parts" if more else ""
+        tie = ", or tie parts so that a factor cancels" if more else ""
         raise Refused(
             Refusal(
                 "order",
-                f"the stage is of order {stage}, the target of order {target}",
-                f"ask for a target of order {stage}, or use a stage of order {target}",
+                f"the stage is of order {stage}{cancels}; the target is of order {target}",
+                f"ask for a target of order {stage}, or use a stage of order {target}{tie}",
             )
         )
 

@@ -126,7 +126,7 @@ def largest_text(posed: Posed, wanted: Container[str] | None, most: int) -> Iter
     yield posed.sheet.title
     for ask, sides in largest_of(posed, wanted, most):
         yield ""
-        yield f"{ask_text(ask)}: the largest products of every coefficient"
+        yield f"{ask_text(ask)}: the largest products of every coefficient, tied parts by their own names"
         for label, side in zip(("over", "under"), sides, strict=True):
             for power in reversed(range(len(side))):
                 coefficient = side[power]

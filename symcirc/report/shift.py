@@ -13,6 +13,7 @@ from symcirc.match.formula import equation_text
 from symcirc.report.numbers import expanded_answers, missing_numbers
 from symcirc.report.quantities import ask_text
 from symcirc.stability.pair import PairChange, PairShift, pair_shift
+from symcirc.stability.perturbation import real_amplifiers
 from symcirc.stability.poles import PoleShift, PoleShifts, pole_shifts
 from symcirc.stability.shift import FirstOrder, first_order_shifts
 from symcirc.transfer.engineering import engineering
@@ -48,10 +49,17 @@ def shift_text(ideal: Derivation, real: Derivation) -> Iterator[str]:
     Raises Complaint where no amplifier has a gain or a gbw.
     """
     yield ideal.sheet.title
-    for answer in _shifted(ideal):
+    answers = list(_shifted(ideal))
+    if not answers:
+        yield ""
+        yield "nothing that is asked has a pole, so nothing can shift"
+    for answer in answers:
         yield ""
         yield f"{ask_text(answer.ask)}: what the real amplifiers change"
         formulas = _in_symbols(ideal, real, answer)
+        if not real_amplifiers(ideal):
+            yield "  nothing: no amplifier has a gain or a gbw"
+            continue
         if formulas:
             yield "  to first order in one over each gain and gbw (Hz); the changes add up"
         for shift in formulas:

@@ -75,7 +75,7 @@ class Checker:
         self.judges = Judges(posed)
         self.lexicon = self.judges.lexicon
         self.context = first_context(posed)
-        self.judges.course(self.context)  # a sheet that cannot be solved is refused before any line is read
+        self.judges.strand(self.context)  # a sheet that cannot be solved is refused before any line is read
         self.degrees: dict[str, Degrees] = {}
         self.lines: list[Line] = []
         self.tried: dict[Context, set[str]] = {}
@@ -110,7 +110,7 @@ class Checker:
             mend = nearest(ask.text, known) or f"the sheet asks for {listed(known)}"
             raise Complaint(ask.place, f"`{ask.text}` is nothing that the sheet asks for", mend)
         context = ask_context(self.posed, ask.text)
-        self.judges.course(context)
+        self.judges.strand(context)
         self.context = context
 
     # one equality -----------------------------------------------------------------------------------------------
@@ -173,12 +173,12 @@ class Checker:
         for side in (left, right):
             degrees(side, self.degrees)
         truth = truth_of(left, right, self.context, self.judges)
-        follows, row = self.judges.course(self.context).take(left, right)
+        follows, row = self.judges.strand(self.context).take(left, right)
         verdict: Verdict = "holds" if truth.holds else "fails"
         if not truth.holds and follows and self._something_failed():
             verdict = "carried"
         if truth.holds and row:
-            self.judges.course(self.context).kept.append((row, is_of_currents(left, self.lexicon)))
+            self.judges.strand(self.context).kept.append((row, is_of_currents(left, self.lexicon)))
         elif not truth.holds:
             self._remember_try(left, right)
         note = _joined([truth.note, unit_trouble(left, right, self.lexicon)])
@@ -203,12 +203,12 @@ class Checker:
         """Return the missing nodes of every context in which there is a line, by their labels."""
         found: list[str] = []
         labels = self.posed.circuit.node_labels
-        for context, course in list(self.judges.courses.items()):
+        for context, strand in list(self.judges.strands.items()):
             tried = frozenset(self.tried.get(context, set()))
-            if not course.symbols or not (course.kept or tried):
+            if not strand.symbols or not (strand.kept or tried):
                 continue
-            own = self.judges.course(ask_context(self.posed, context.setup.ask))
-            nodes = missing_nodes(own.symbols[0].residues, course.symbols[0].residues, course.kept, tried)
+            own = self.judges.strand(ask_context(self.posed, context.setup.ask))
+            nodes = missing_nodes(own.symbols[0].residues, strand.symbols[0].residues, strand.kept, tried)
             found += [labels.get(node, node) for node in nodes]
         return tuple(dict.fromkeys(found))
 

@@ -27,7 +27,7 @@ class Judges:
         self.posed = posed
         self.lexicon = Lexicon(posed.sheet, symbols_of(posed.sheet, posed.ties), self._has_shape)
         self._judges: dict[tuple[Context, bool, frozenset[str]], Judge] = {}
-        self._courses: dict[Context, Course] = {}
+        self._strands: dict[Context, Strand] = {}
 
     def judge(
         self, context: Context, *, given: bool = False, released: frozenset[str] = frozenset()
@@ -51,19 +51,19 @@ class Judges:
             return False
         return True
 
-    def course(self, context: Context) -> Course:
+    def strand(self, context: Context) -> Strand:
         """Return the lines of a context so far, as algebra."""
-        if context not in self._courses:
+        if context not in self._strands:
             symbols = _algebras(lambda: self.judge(context))
             has_numbers = self.can_take_numbers(context)
             numbers = _algebras(lambda: self.judge(context, given=True)) if has_numbers else []
-            self._courses[context] = Course(symbols, numbers)
-        return self._courses[context]
+            self._strands[context] = Strand(symbols, numbers)
+        return self._strands[context]
 
     @property
-    def courses(self) -> dict[Context, Course]:
-        """The courses that were begun."""
-        return self._courses
+    def strands(self) -> dict[Context, Strand]:
+        """The strands that were begun."""
+        return self._strands
 
     def _first_function(self) -> TransferFunction:
         function = self._function
@@ -88,7 +88,7 @@ def _algebras(judge: Callable[[], Judge]) -> list[Algebra]:
         return []
 
 
-class Course:
+class Strand:
     """The lines of a working under one context, as rows at each point; ``kept`` are the true ones at the first.
 
     With each it is kept whether it was written as an equality of currents.

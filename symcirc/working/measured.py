@@ -1,6 +1,6 @@
 """Numbers of many digits that know how far they may be off: the second way to a verdict.
 
-Errors are carried to first order and a little more, as in any first course on errors of measurement.
+Errors are carried to first order and a little more.
 """
 
 from __future__ import annotations

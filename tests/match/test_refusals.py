@@ -92,7 +92,7 @@ TABLE = [
         "exact",
         {},
         "order",
-        "the stage is of order 2, the target of order 3",
+        "the stage is of order 2; the target is of order 3",
         "order 2",
     ),
     (
