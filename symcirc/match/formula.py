@@ -7,8 +7,8 @@ from collections.abc import Sequence
 import sympy
 
 from symcirc.match.arithmetic import Factor, Term, by_powers_of, term_of, terms_of
-from symcirc.match.names import own_name
 from symcirc.match.problem import Condition, Root
+from symcirc.transfer.latex import latex_name
 
 
 def equation_text(formula: sympy.Expr | Root) -> str:
@@ -84,7 +84,7 @@ def equation_latex(formula: sympy.Expr | Root) -> str:
     """
     if isinstance(formula, Root):
         ordered = by_powers_of(formula.polynomial, sympy.Symbol(formula.variable))
-        name = name_latex(formula.variable)
+        name = latex_name(formula.variable)
         return rf"\operatorname{{root}}_{{{name}}}\left({_joined_latex([term_of(t) for t in ordered])}\right)"
     return _joined_latex(terms_of(formula))
 
@@ -97,20 +97,6 @@ def condition_latex(condition: Condition) -> str:
     """
     relation = {">=": r"\ge", "<=": r"\le"}.get(condition.relation, condition.relation)
     return f"{equation_latex(condition.left)} {relation} {equation_latex(condition.right)}"
-
-
-def name_latex(name: str) -> str:
-    r"""Return a name as LaTeX source.
-
-    >>> print(name_latex("R12"), name_latex("S1_C2"), name_latex("gain"))
-    R_{12} \mathrm{S1.}C_{2} \mathrm{gain}
-    """
-    own = own_name(name)
-    block = rf"\mathrm{{{name[: -len(own) - 1].replace('_', '.')}.}}" if own != name else ""
-    letters = own.rstrip("0123456789")
-    digits = own[len(letters) :]
-    letters = letters if len(letters) < 2 else rf"\mathrm{{{letters}}}"
-    return block + letters + (f"_{{{digits}}}" if digits else "")
 
 
 def _joined_latex(terms: Sequence[Term]) -> str:
@@ -157,5 +143,5 @@ def _base_latex(base: sympy.Expr | str) -> str:
     if base == sympy.pi:
         return r"\pi"
     if base.is_Symbol:
-        return name_latex(str(base))
+        return latex_name(str(base))
     return str(base) if base.is_Integer else rf"\left({equation_latex(base)}\right)"
