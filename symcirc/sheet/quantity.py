@@ -143,8 +143,13 @@ def read_unit(text: str, number: str, place: Place) -> tuple[Fraction, str]:
 def _unknown_unit(text: str, number: str, glued: bool) -> tuple[str, str]:
     """Return what is wrong with a word that stands where a unit does, and how it is mended."""
     if text in PREFIXES or text in CODE_LETTERS:
-        unit = {"K": "kohm", "R": "ohm"}.get(text, f"{text}ohm")
+        unit = {"K": "kohm", "R": "ohm"}.get(text, f"{text}F" if PREFIXES.get(text, 0) < 0 else f"{text}ohm")
         with_unit = f"{number} {unit}"
+        if glued and number.isdigit():
+            return (
+                f"the value code `{number}{text}` stands where no code can: a code takes no sign and no arithmetic",
+                f"write it alone, or as a number: {with_unit} or the like",
+            )
         if glued:
             return (
                 f"`{number}{text}` is not a value code",

@@ -189,6 +189,12 @@ def _check_belongs(word: str, place: Place, shape: tuple[Name, ...], family: str
 
 
 def _check_complete(words: Mapping[str, Value], line: st.ShapeLine, family: str | None) -> None:
+    if family is None and "order" in words and try_out(words["order"].expression, {}).whole != 2:
+        raise Complaint(
+            words["order"].place,
+            "f0 and q describe order 2",
+            "write order 2, or name a family for another order",
+        )
     wanted = [*_needs(family), *(() if line.meets else ("order",))]
     groups = _frequencies(line.shape[0].text, family)
     given = [group for group in groups if any(word in words for word in group)]
@@ -208,12 +214,6 @@ def _check_complete(words: Mapping[str, Value], line: st.ShapeLine, family: str 
 
 def _check_together(words: Mapping[str, Value], family: str | None, settled: Settled) -> None:
     """Raise Complaint where words fit one by one, and not together."""
-    if family is None and try_out(words["order"].expression, {}).whole != 2:
-        raise Complaint(
-            words["order"].place,
-            "f0 and q describe order 2",
-            "write order 2, or name a family for another order",
-        )
     if "ripple" in words:
         unit = "deg" if family == "linear phase" else "dB"
         if words["ripple"].unit != unit:
