@@ -49,3 +49,16 @@ def test_a_working_that_leaves_out_a_node_is_told_which(capsys, tmp_path):
     path = tmp_path / "hand.work"
     path.write_text("V_a/R3 = -V_out s C2\n", encoding="utf-8")
     assert call(capsys, "check", STAGE, path, "--json").json["missing"] == ["a"]
+
+
+def test_a_law_used_on_either_side_of_under_is_not_missing(capsys, tmp_path):
+    sheet = tmp_path / "s.stage"
+    sheet.write_text(STAGE.read_text(encoding="utf-8") + "ask Zin = V_in/I_in\n", encoding="utf-8")
+    working = tmp_path / "s.work"
+    working.write_text(
+        "V_a/R3 + s C2 V_out = 0\nunder Zin\nI_in = (V_in - V_a)/R1\n"
+        "(V_in - V_a)/R1 = V_a s C1 + V_a/R3 + (V_a - V_out)/R2\n",
+        encoding="utf-8",
+    )
+    called = call(capsys, "check", sheet, working, "--json")
+    assert called.json["missing"] == []

@@ -200,8 +200,11 @@ class Checker:
         self.tried.setdefault(self.context, set()).update(tried_nodes(parts, at))
 
     def _missing(self) -> tuple[str, ...]:
-        """Return the missing nodes of every context in which there is a line, by their labels."""
-        found: list[str] = []
+        """Return the nodes that are missing in every context in which there is a line, by their labels.
+
+        A law that was used under one ask was used: with ``under`` a working may take it on either side.
+        """
+        found: list[list[str]] = []
         labels = self.posed.circuit.node_labels
         for context, strand in list(self.judges.strands.items()):
             tried = frozenset(self.tried.get(context, set()))
@@ -209,8 +212,9 @@ class Checker:
                 continue
             own = self.judges.strand(ask_context(self.posed, context.setup.ask))
             nodes = missing_nodes(own.symbols[0].residues, strand.symbols[0].residues, strand.kept, tried)
-            found += [labels.get(node, node) for node in nodes]
-        return tuple(dict.fromkeys(found))
+            found.append([labels.get(node, node) for node in nodes])
+        everywhere = set.intersection(*map(set, found)) if found else set()
+        return tuple(label for label in found[0] if label in everywhere) if found else ()
 
 
 def _joined(notes: list[str | None]) -> str | None:
