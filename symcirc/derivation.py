@@ -18,7 +18,7 @@ from symcirc.elimination.solve import silent
 from symcirc.nodal import build_system
 from symcirc.ratio import Coefficient, Ratio
 from symcirc.sheet.expression import Expression
-from symcirc.sheet.model import Ask, Sheet, Voltage
+from symcirc.sheet.model import Ask, Quantity, Sheet, Voltage
 from symcirc.transfer.build import Built, build_function
 from symcirc.transfer.function import TransferFunction, symbols_in
 from symcirc.transfer.signs import sign_remarks
@@ -173,6 +173,16 @@ def _determinants(posed: Posed, setup: Setup) -> Diagram:
         ) from None
 
 
+def _drive_itself(setup: Setup) -> Quantity:
+    """Return what stands under the line where the drive does: its voltage, or what is asked for itself."""
+    drive = setup.drive
+    return (
+        Voltage(drive.plus, drive.minus, setup.under.place)
+        if isinstance(drive, VoltageDrive)
+        else setup.under
+    )
+
+
 def solved_diagram(posed: Posed, setup: Setup) -> Diagram:
     """Return numerator and denominator of an ask as a decision diagram, products not yet collected.
 
@@ -217,10 +227,9 @@ def _big_answer(posed: Posed, ask: Ask, setup: Setup, diagram: Diagram) -> BigAn
 def _answer(
     posed: Posed, ask: Ask, setup: Setup, diagram: Diagram, progress: Progress
 ) -> tuple[Answer, list[Remark]]:
-    over, under = (tuple(expanded(diagram, root)) for root in diagram.roots)
-    ratio = _as_asked(Ratio(symbols(diagram), over, under), setup)
+    ratio = _as_asked(_expanded_ratio(diagram), setup)
     built = build_function(ratio, posed.ties)
-    if built is None:
+    if built is None or not _solvable_when_tied(posed, setup):
         raise Complaint(
             ask.place,
             f"with the sheet's fixes the equations for `{ask.name}` have no solution, or many",
@@ -231,6 +240,20 @@ def _answer(
     hidden = _eliminate(posed, setup, built, progress) if cheap else built
     answer = Answer(ask, setup, ratio, built.function, evidence, cheap)
     return answer, _hidden_mode(ask, len(hidden.hidden) - 1)
+
+
+def _expanded_ratio(diagram: Diagram) -> Ratio:
+    over, under = (tuple(expanded(diagram, root)) for root in diagram.roots)
+    return Ratio(symbols(diagram), over, under)
+
+
+def _solvable_when_tied(posed: Posed, setup: Setup) -> bool:
+    """Tell whether the ties leave the determinant, which a ratio of two voltages does not show, other than zero."""
+    own = _drive_itself(setup)
+    if setup.under == own or not posed.ties:
+        return True
+    diagram = collected(_determinants(posed, replace(setup, over=setup.under, under=own)))
+    return build_function(_expanded_ratio(diagram), posed.ties) is not None
 
 
 def is_cheap(circuit: Circuit, diagram: Diagram) -> bool:

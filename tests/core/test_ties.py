@@ -107,6 +107,16 @@ def test_ties_that_make_the_circuit_singular_are_said_to() -> None:
         derive(pose(read(text)))
 
 
+def test_a_ratio_of_two_voltages_is_refused_too_where_ties_make_the_circuit_singular() -> None:
+    # the same source with nothing on p: both voltages are infinite, though their quotient is not
+    text = (
+        "in -- R1 -- p -- R2 -- out\ngnd -- R3 -- m -- R4 -- out\nU1 opamp: plus p, minus m, drives out\n"
+        "fix R4 = R2*R3/R1\nask K = V_out/V_p driven at in"
+    )
+    with pytest.raises(Complaint, match="with the sheet's fixes the equations for `K` have no solution"):
+        derive(pose(read(text)))
+
+
 def test_names_are_sorted_as_a_person_sorts_them() -> None:
     names = ["k", "S1_R1", "C2", "R10", "L1", "R2", "Y1", "C1", "w0", "U1_gain", "Z3"]
     expected = ["R2", "R10", "S1_R1", "C1", "C2", "L1", "Z3", "Y1", "U1_gain", "k", "w0"]
