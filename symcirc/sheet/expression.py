@@ -123,14 +123,23 @@ def fold(expression: Expression, combine: Callable[[Expression, list[T]], T]) ->
     return done[0]
 
 
-def names(expression: Expression) -> Iterator[Name]:
-    """Yield every name in the expression, in the order in which they are written."""
+def nodes(expression: Expression) -> Iterator[Expression]:
+    """Yield every node of the expression, in the order in which they are written."""
     waiting = [expression]
     while waiting:
         node = waiting.pop()
-        if isinstance(node, Name):
-            yield node
+        yield node
         waiting.extend(reversed(children(node)))
+
+
+def names(expression: Expression) -> Iterator[Name]:
+    """Yield every name in the expression, in the order in which they are written."""
+    return (node for node in nodes(expression) if isinstance(node, Name))
+
+
+def roots(expression: Expression) -> Iterator[Root]:
+    """Yield every square root in the expression, in the order in which they are written."""
+    return (node for node in nodes(expression) if isinstance(node, Root))
 
 
 def rename(expression: Expression, new_text: Callable[[Name], str]) -> Expression:

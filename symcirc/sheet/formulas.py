@@ -14,11 +14,10 @@ from symcirc.sheet.expression import (
     Power,
     Product,
     Reciprocal,
-    Root,
     Sum,
-    children,
     fold,
     names,
+    roots,
 )
 from symcirc.sheet.model import Symbol
 
@@ -34,7 +33,7 @@ def check_names(expression: Expression, symbols: Mapping[str, Symbol], *, s_allo
         if name.text == "pi" or name.text in symbols or (name.text == "s" and s_allowed):
             continue
         raise Complaint(name.place, *_unknown(name.text, symbols))
-    for root in _roots(expression):
+    for root in roots(expression):
         if not is_number(root):
             raise Complaint(
                 root.place,
@@ -53,15 +52,6 @@ def _unknown(text: str, symbols: Mapping[str, Symbol]) -> tuple[str, str]:
         )
     hint = nearest(text, symbols)
     return f"`{text}` is not declared", hint or f"declare it: fix {text} = value, or choose {text}"
-
-
-def _roots(expression: Expression) -> Iterable[Root]:
-    waiting = [expression]
-    while waiting:
-        node = waiting.pop()
-        if isinstance(node, Root):
-            yield node
-        waiting.extend(children(node))
 
 
 # size -------------------------------------------------------------------------------------------------------

@@ -24,10 +24,10 @@ from symcirc.sheet.expression import (
     Reciprocal,
     Root,
     Sum,
-    children,
     fold,
     names,
     refuse_zero_division,
+    roots,
 )
 from symcirc.sheet.fixes import tie_order
 
@@ -67,29 +67,20 @@ def ring_for(symbols: Iterable[str], ties: Mapping[str, Expression]) -> PolyRing
 
 
 def _field(ties: Iterable[Expression]) -> sympy.polys.domains.Field:
-    roots: dict[sympy.Expr, Root] = {}
+    found: dict[sympy.Expr, Root] = {}
     for tie in ties:
-        for root in _roots(tie):
+        for root in roots(tie):
             for atom in exact_number(root).atoms(sympy.Pow):
                 if atom.exp == sympy.Rational(1, 2):
-                    roots.setdefault(atom, root)
-    if len(roots) > MOST_ROOTS:
-        last = list(roots.values())[-1]
+                    found.setdefault(atom, root)
+    if len(found) > MOST_ROOTS:
+        last = list(found.values())[-1]
         raise Complaint(
             last.place,
             f"more than {MOST_ROOTS} different square roots stand in the fixes",
             "choose names for some of them",
         )
-    return QQ.algebraic_field(*roots) if roots else QQ
-
-
-def _roots(expression: Expression) -> Iterable[Root]:
-    waiting = [expression]
-    while waiting:
-        node = waiting.pop()
-        if isinstance(node, Root):
-            yield node
-        waiting.extend(children(node))
+    return QQ.algebraic_field(*found) if found else QQ
 
 
 def expression_in(ring: PolyRing, expression: Expression, known: Mapping[str, Quotient]) -> Quotient:

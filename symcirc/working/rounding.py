@@ -2,14 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
 from dataclasses import dataclass
 from fractions import Fraction
 
 import mpmath
 
 from symcirc.complaints import Place
-from symcirc.sheet.expression import Expression, Negative, Number, children
+from symcirc.sheet.expression import Expression, Negative, Number, nodes
 from symcirc.working import measured
 from symcirc.working.measured import Measured
 
@@ -42,22 +41,13 @@ def rounding_of(left: Expression, right: Expression) -> Rounding | None:
     halves, digits = {}, []
     for side in (left, right):
         whole = side.operand if isinstance(side, Negative) else side
-        for number in _numbers(side):
+        for number in (node for node in nodes(side) if isinstance(node, Number)):
             count, half = _last_digit(_written(number))
             rounded = number is whole or any(c in ".eE" for c in _written(number))
             if rounded and count >= FEWEST_DIGITS:
                 halves[number.place] = half
                 digits.append(count)
     return Rounding(min(digits), halves) if digits else None
-
-
-def _numbers(expression: Expression) -> Iterator[Number]:
-    waiting = [expression]
-    while waiting:
-        node = waiting.pop()
-        if isinstance(node, Number):
-            yield node
-        waiting.extend(children(node))
 
 
 def _written(number: Number) -> str:
