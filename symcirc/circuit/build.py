@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
-
 import networkx as nx
 
 from symcirc.circuit.model import Circuit, CurrentDrive, Drive, LoopDrive, Setup, VoltageDrive
@@ -46,16 +44,7 @@ def build_circuit(sheet: Sheet) -> Circuit:
     for device in sheet.devices:
         for role in BRANCHES[device.kind]:
             graph.add_edge(*branch(device, role), key=(device.name, role))
-    devices = tuple(_with_declared(device, sheet) for device in sheet.devices)
-    return Circuit(sheet.parts, devices, graph, sheet.node_labels, sheet.node_places, sheet.ports)
-
-
-def _with_declared(device: Device, sheet: Sheet) -> Device:
-    """Give an amplifier the parameters that the sheet declares elsewhere (``fix U1_gain = 1e5``)."""
-    if device.kind != "opamp":
-        return device
-    names = {word: f"{device.name}_{word}" for word in ("gain", "gbw")}
-    return replace(device, parameters={word: name for word, name in names.items() if name in sheet.symbols})
+    return Circuit(sheet.parts, sheet.devices, graph, sheet.node_labels, sheet.node_places, sheet.ports)
 
 
 def build_setup(circuit: Circuit, asks: tuple[Ask, ...], ask: Ask) -> Setup:
@@ -65,7 +54,7 @@ def build_setup(circuit: Circuit, asks: tuple[Ask, ...], ask: Ask) -> Setup:
     ``with I_n = 0`` leaves it open. Raises Complaint where a condition contradicts the ask's own drive.
     """
     drive = _drive(circuit, ask)
-    live = _driven_pair(drive)
+    live = drive.pair
     opened = {dead.node for dead in ask.dead if dead.quantity == "I"}
     shorted = {dead.node for dead in ask.dead if dead.quantity == "V"}
     for dead in ask.dead:
@@ -83,9 +72,10 @@ def build_setup(circuit: Circuit, asks: tuple[Ask, ...], ask: Ask) -> Setup:
             )
     pairs = [(node, GROUND) for node in sorted(shorted)]
     for other in asks:
-        pair = None if other.loop else _driven_pair(_drive(circuit, other))
-        if pair is None or (isinstance(_drive(circuit, other), CurrentDrive)):
-            continue
+        dead_drive = _drive(circuit, other)
+        if not isinstance(dead_drive, VoltageDrive):
+            continue  # a dead current drive is open, and a loop has no drive of its own
+        pair = dead_drive.pair
         if not opened & set(pair) and all(set(pair) != set(known) for known in (live, *pairs)):
             pairs.append(pair)
     over, under = _over_and_under(circuit, ask)
@@ -109,10 +99,6 @@ def _drive(circuit: Circuit, ask: Ask) -> Drive:
         return CurrentDrive(ask.under.node)
     assert isinstance(ask.under, Voltage)
     return VoltageDrive(ask.under.plus, ask.under.minus)
-
-
-def _driven_pair(drive: Drive) -> tuple[str, str]:
-    return (drive.plus, drive.minus) if isinstance(drive, VoltageDrive) else (drive.node, GROUND)
 
 
 def _amplifier(circuit: Circuit, name: str) -> Device:

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import networkx as nx
 
 from symcirc.complaints import Place
-from symcirc.sheet.model import Device, Part, Quantity
+from symcirc.sheet.model import GROUND, Device, Part, Quantity
 
 
 @dataclass(frozen=True)
@@ -34,12 +34,22 @@ class VoltageDrive:
     plus: str
     minus: str
 
+    @property
+    def pair(self) -> tuple[str, str]:
+        """The nodes between which the drive stands."""
+        return self.plus, self.minus
+
 
 @dataclass(frozen=True)
 class CurrentDrive:
     """An ideal current source that delivers 1 into ``node`` from ground."""
 
     node: str
+
+    @property
+    def pair(self) -> tuple[str, str]:
+        """The nodes between which the drive stands."""
+        return self.node, GROUND
 
 
 @dataclass(frozen=True)
@@ -48,6 +58,11 @@ class LoopDrive:
 
     amplifier: str
     node: str
+
+    @property
+    def pair(self) -> tuple[str, str]:
+        """The nodes between which the drive stands."""
+        return self.node, GROUND
 
 
 Drive = VoltageDrive | CurrentDrive | LoopDrive

@@ -103,9 +103,7 @@ def _refuse_hanging(
 
 
 def _driven_nodes(setup: Setup) -> Iterator[str]:
-    drive = setup.drive
-    yield from (drive.plus, drive.minus) if isinstance(drive, VoltageDrive) else (drive.node,)
-    for pair in setup.shorts:
+    for pair in (setup.drive.pair, *setup.shorts):
         yield from pair
 
 
@@ -129,10 +127,8 @@ def _refuse_islands(circuit: Circuit, setup: Setup, terminals: dict[str, list[tu
     """A node that no current can leave, or a group that no current path joins to ground, has no voltage."""
     graph = circuit.graph.copy()
     if isinstance(setup.drive, VoltageDrive):
-        graph.add_edge(setup.drive.plus, setup.drive.minus)
+        graph.add_edge(*setup.drive.pair)
     graph.add_edges_from(setup.shorts)
-    if isinstance(setup.drive, CurrentDrive):
-        graph.add_node(setup.drive.node)
     grounded = nx.node_connected_component(graph, GROUND)
     for node, place in circuit.node_places.items():
         if node in grounded:
@@ -192,8 +188,7 @@ def _sources(
 ) -> Iterator[tuple[str, Place, tuple[str, str]]]:
     drive = setup.drive
     if not isinstance(drive, CurrentDrive):
-        pair = (drive.plus, drive.minus) if isinstance(drive, VoltageDrive) else (drive.node, GROUND)
-        yield f"the drive of `{setup.ask}`", setup.place, pair
+        yield f"the drive of `{setup.ask}`", setup.place, drive.pair
     for pair in setup.shorts:
         yield f"the dead drive at `{_label(circuit, pair[0])}`", setup.place, pair
     for device in circuit.devices:
@@ -226,10 +221,8 @@ def _influence(circuit: Circuit, setup: Setup) -> nx.DiGraph:
     """Return which node's voltage moves which: through parts both ways, through devices from input to output."""
     graph: nx.DiGraph = nx.DiGraph()
     drive = setup.drive
-    pairs = [*setup.shorts, *([(drive.plus, drive.minus)] if isinstance(drive, VoltageDrive) else [])]
+    pairs = [*setup.shorts, *([] if isinstance(drive, CurrentDrive) else [drive.pair])]
     pinned = {GROUND, *(pair[0] for pair in pairs if pair[1] == GROUND)}
-    if isinstance(drive, LoopDrive):
-        pinned.add(drive.node)
     outputs = {d.terminals["drives"][0] for d in circuit.devices if d.kind == "opamp"}
     for plus, minus in pairs:  # between two nodes a source holds a difference, and moves both together
         if minus != GROUND:

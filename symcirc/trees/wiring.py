@@ -10,8 +10,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
-from symcirc.circuit.model import Circuit, LoopDrive, Setup, VoltageDrive
-from symcirc.sheet.model import GROUND, Device, NodeCurrent, Part, PartCurrent, Quantity, Voltage
+from symcirc.circuit.model import Circuit, LoopDrive, Setup
+from symcirc.sheet.model import Device, NodeCurrent, Part, PartCurrent, Quantity, Voltage
 from symcirc.trees.laws import Edge
 
 
@@ -61,7 +61,7 @@ def wired(circuit: Circuit, setup: Setup) -> tuple[Wiring, Asked, Asked]:
     wiring = Wiring(
         {part.name: part for part in circuit.parts},
         {device.name: device for device in circuit.devices if device.name != replaced},
-        (drive.plus, drive.minus) if isinstance(drive, VoltageDrive) else (drive.node, GROUND),
+        drive.pair,
         setup.shorts,
         replaced,
     )

@@ -39,15 +39,9 @@ def own_drive(setup: Setup) -> Quantity:
             return Voltage(drive.node, GROUND, setup.place)
 
 
-def driven_pair(setup: Setup) -> tuple[str, str]:
-    """Return the nodes between which a setup's drive stands, voltage or current."""
-    drive = setup.drive
-    return (drive.plus, drive.minus) if isinstance(drive, VoltageDrive) else (drive.node, GROUND)
-
-
 def delivering_nodes(posed: Posed) -> frozenset[str]:
     """Return the nodes into which some ask's drive, or a short in its place, delivers a current."""
-    pairs = [pair for setup in posed.setups.values() for pair in (driven_pair(setup), *setup.shorts)]
+    pairs = [pair for setup in posed.setups.values() for pair in (setup.drive.pair, *setup.shorts)]
     return frozenset(node for pair in pairs for node in pair)
 
 
@@ -59,7 +53,7 @@ def first_context(posed: Posed) -> Context:
     asks = posed.sheet.asks
     setup = posed.setups[asks[0].name]
     others = [posed.setups[ask.name].drive for ask in asks[1:]]
-    pairs = {(drive.plus, drive.minus) for drive in others if isinstance(drive, VoltageDrive)}
+    pairs = {drive.pair for drive in others if isinstance(drive, VoltageDrive)}
     return Context(setup, tuple(k for k, pair in enumerate(setup.shorts) if pair in pairs))
 
 

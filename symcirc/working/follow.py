@@ -9,7 +9,6 @@ from __future__ import annotations
 
 from symcirc.sheet.expression import Expression
 from symcirc.sheet.model import GROUND, NodeCurrent, PartCurrent, Quantity, Voltage
-from symcirc.working.context import driven_pair
 from symcirc.working.elimination import Basis, Row
 from symcirc.working.field import NotInField
 from symcirc.working.forms import (
@@ -85,7 +84,7 @@ class Algebra:
         """Return an ask as its ratio where one drive, at the same nodes, is live; else it is one more number."""
         context, setup = self.residues.context, self.residues.posed.setups[name]
         ask = self.residues.posed.sheet.ask(name)
-        same = driven_pair(setup) == driven_pair(context.setup) and setup.shorts == context.setup.shorts
+        same = setup.drive.pair == context.setup.drive.pair and setup.shorts == context.setup.shorts
         if ask.loop is None and same and len(context.drives) == 1:
             return multiply(quantity_form(setup.over), invert(quantity_form(setup.under)))
         return constant(self.residues.value(name))
