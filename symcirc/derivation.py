@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Container, Iterator, Mapping
+from collections.abc import Container, Iterator, Mapping
 from dataclasses import dataclass, replace
 from typing import cast
 
@@ -14,11 +14,11 @@ from symcirc.circuit.model import Circuit, LoopDrive, Setup, VoltageDrive
 from symcirc.circuit.structure import bias_remarks, explain_singular, refuse_structure
 from symcirc.complaints import Complaint, InternalFault, Remark, listed
 from symcirc.elimination import solve
-from symcirc.elimination.solve import silent
 from symcirc.nodal import build_system
+from symcirc.progress import Progress, silent
 from symcirc.ratio import Coefficient, Ratio
 from symcirc.sheet.expression import Expression
-from symcirc.sheet.model import Ask, Quantity, Sheet, Voltage
+from symcirc.sheet.model import Ask, Sheet, Voltage
 from symcirc.transfer.build import Built, build_function
 from symcirc.transfer.function import TransferFunction, symbols_in
 from symcirc.transfer.signs import sign_remarks
@@ -30,8 +30,6 @@ from symcirc.trees.evaluate import response
 from symcirc.trees.expand import expanded, symbols
 from symcirc.trees.frontier import TooManyStates
 from symcirc.witness.agree import Evidence, confirm, confirm_values
-
-Progress = Callable[[str], None]
 
 #: Answers with more products than this are not expanded unless it is asked for.
 MOST_PRODUCTS = 20_000
@@ -93,9 +91,13 @@ class Derivation:
 
 @dataclass(frozen=True)
 class Posed:
-    """A sheet's asks made ready: the circuit, its ties, and what each ask applies."""
+    """A sheet's asks made ready: the circuit, its ties, and what each ask applies.
+
+    ``ideal`` is the circuit with all its amplifiers ideal, whatever counts in ``circuit``.
+    """
 
     sheet: Sheet
+    ideal: Circuit
     circuit: Circuit
     ties: Mapping[str, Expression]
     setups: Mapping[str, Setup]
@@ -109,20 +111,21 @@ class Posed:
 
 def pose(sheet: Sheet) -> Posed:
     """Return a sheet's asks made ready, its amplifiers ideal; raises Complaint for what no circuit may have."""
-    return _pose(sheet, build_circuit(sheet), sheet.ties)
+    ideal = build_circuit(sheet)
+    return _pose(sheet, ideal, ideal, sheet.ties)
 
 
 def pose_real(sheet: Sheet) -> Posed:
     """Return a sheet's asks made ready, the amplifiers' ``gain`` and ``gbw`` counted."""
-    circuit, gains = real_circuit(build_circuit(sheet))
-    return _pose(sheet, circuit, {**sheet.ties, **gains})
+    ideal = build_circuit(sheet)
+    circuit, gains = real_circuit(ideal)
+    return _pose(sheet, ideal, circuit, {**sheet.ties, **gains})
 
 
-def _pose(sheet: Sheet, circuit: Circuit, ties: Mapping[str, Expression]) -> Posed:
+def _pose(sheet: Sheet, ideal: Circuit, circuit: Circuit, ties: Mapping[str, Expression]) -> Posed:
     setups = {ask.name: build_setup(circuit, sheet.asks, ask) for ask in sheet.asks}
     refuse_structure(circuit, sheet.asks, tuple(setups.values()))
-    loops = loop_gains(build_circuit(sheet), setups.values())
-    return Posed(sheet, circuit, {**ties, **loops}, setups)
+    return Posed(sheet, ideal, circuit, {**ties, **loop_gains(ideal, setups.values())}, setups)
 
 
 def derive(
@@ -144,20 +147,19 @@ def derive(
     remarks = [*posed.sheet.remarks, *bias_remarks(posed.circuit, setups)]
     for ask, setup in posed.wanted(wanted):
         progress(f"deriving {ask.name}")
-        diagram = collected(solved_diagram(posed, setup))
-        if sum(count(diagram)) > most:
-            answers.append(_big_answer(posed, ask, setup, diagram))
+        solved = solve_ask(posed, setup)
+        if sum(count(solved.collected)) > most:
+            answers.append(_big_answer(posed, ask, setup, solved.collected))
             continue
-        answer, found = _answer(posed, ask, setup, diagram, progress)
+        answer, found = _answer(posed, ask, setup, solved, progress)
         answers.append(answer)
         remarks += [*found, *sign_remarks(answer.function, posed.sheet.symbols, ask)]
     remarks += _idle_parts(posed, answers)
-    if any(device.kind == "opamp" for device in posed.sheet.devices):
-        from symcirc.stability.exchanged import (
-            exchanged_inputs,
-        )  # late: stages without amplifiers start sooner
+    if any(device.kind == "opamp" for device in posed.ideal.devices):
+        # imported late: sheets without amplifiers start sooner
+        from symcirc.stability.exchanged import exchanged_inputs
 
-        remarks += exchanged_inputs(posed.sheet, build_circuit(posed.sheet), setups)
+        remarks += exchanged_inputs(posed.sheet, posed.ideal, setups)
     return Derivation(posed.sheet, posed.circuit, posed.ties, tuple(answers), tuple(remarks))
 
 
@@ -173,51 +175,53 @@ def _determinants(posed: Posed, setup: Setup) -> Diagram:
         ) from None
 
 
-def _drive_itself(setup: Setup) -> Quantity:
-    """Return what stands under the line where the drive does: its voltage, or what is asked for itself."""
-    drive = setup.drive
-    return (
-        Voltage(drive.plus, drive.minus, setup.under.place)
-        if isinstance(drive, VoltageDrive)
-        else setup.under
-    )
+@dataclass(frozen=True)
+class Solved:
+    """An ask's two determinants as decision diagrams.
+
+    ``walked`` has the products before collection, ``collected`` each once. Where neither side of the ratio is the
+    drive, ``drive`` has what stands under the line over the drive's own determinant, which the ratio hides; else it
+    is None.
+    """
+
+    walked: Diagram
+    collected: Diagram
+    drive: Diagram | None
 
 
-def solved_diagram(posed: Posed, setup: Setup) -> Diagram:
-    """Return numerator and denominator of an ask as a decision diagram, products not yet collected.
+def solve_ask(posed: Posed, setup: Setup) -> Solved:
+    """Return numerator and denominator of an ask as decision diagrams.
 
     Raises Complaint where the equations have no unique solution, or what stands under the line is always zero.
     """
-    diagram = _determinants(posed, setup)
-    drive = setup.drive
-    own = (
-        Voltage(drive.plus, drive.minus, setup.under.place)
-        if isinstance(drive, VoltageDrive)
-        else setup.under
-    )
-    if setup.under != own:  # two ratios over one determinant, which must not be zero itself
-        _require_solution(posed, replace(setup, under=own), _determinants(posed, replace(setup, under=own)))
-        if not collected(diagram).roots[1]:
-            raise Complaint(
-                setup.under.place,
-                f"what stands under the line of `{setup.ask}` is zero, whatever the drive is",
-                "put a voltage or a current under the line that the drive moves",
-            )
-        return diagram
-    _require_solution(posed, setup, diagram)
-    return diagram
-
-
-def _require_solution(posed: Posed, setup: Setup, diagram: Diagram) -> None:
-    if not collected(diagram).roots[1]:
+    walked = _determinants(posed, setup)
+    drive = _under_over_drive(posed, setup)
+    found = Solved(walked, collected(walked), drive)
+    determinant = found.collected.roots[1] if drive is None else drive.roots[1]
+    if not determinant:
         raise explain_singular(posed.circuit, setup)
+    if not found.collected.roots[1]:
+        raise Complaint(
+            setup.under.place,
+            f"what stands under the line of `{setup.ask}` is zero, whatever the drive is",
+            "put a voltage or a current under the line that the drive moves",
+        )
+    return found
+
+
+def _under_over_drive(posed: Posed, setup: Setup) -> Diagram | None:
+    """Return what stands under the line over the drive's voltage, or None where that is the drive itself."""
+    if not isinstance(setup.drive, VoltageDrive):
+        return None
+    own = Voltage(*setup.drive.pair, setup.under.place)
+    if setup.under == own:
+        return None
+    return collected(_determinants(posed, replace(setup, over=setup.under, under=own)))
 
 
 def _big_answer(posed: Posed, ask: Ask, setup: Setup, diagram: Diagram) -> BigAnswer:
     def value(known: Mapping[str, complex], s: complex) -> complex:
-        return response(
-            diagram, cast(Mapping[str, float], known), s
-        )  # a tied value may be complex; it serves
+        return response(diagram, cast(Mapping[str, float], known), s)  # a tied value may be complex
 
     evidence = confirm_values(posed.circuit, setup, posed.ties, value)
     loop = gain_symbol(setup.drive.amplifier) if isinstance(setup.drive, LoopDrive) else None
@@ -225,18 +229,18 @@ def _big_answer(posed: Posed, ask: Ask, setup: Setup, diagram: Diagram) -> BigAn
 
 
 def _answer(
-    posed: Posed, ask: Ask, setup: Setup, diagram: Diagram, progress: Progress
+    posed: Posed, ask: Ask, setup: Setup, solved: Solved, progress: Progress
 ) -> tuple[Answer, list[Remark]]:
-    ratio = _as_asked(_expanded_ratio(diagram), setup)
+    ratio = _as_asked(_expanded_ratio(solved.collected), setup)
     built = build_function(ratio, posed.ties)
-    if built is None or not _solvable_when_tied(posed, setup):
+    if built is None or not _solvable_when_tied(posed, solved):
         raise Complaint(
             ask.place,
             f"with the sheet's fixes the equations for `{ask.name}` have no solution, or many",
             f"look at what is tied ({listed(list(posed.ties)[:6])}): it makes the circuit singular",
         )
     evidence = confirm(posed.circuit, setup, posed.ties, built.function)
-    cheap = is_cheap(posed.circuit, diagram)
+    cheap = is_cheap(posed.circuit, solved.collected)
     hidden = _eliminate(posed, setup, built, progress) if cheap else built
     answer = Answer(ask, setup, ratio, built.function, evidence, cheap)
     return answer, _hidden_mode(ask, len(hidden.hidden) - 1)
@@ -247,13 +251,11 @@ def _expanded_ratio(diagram: Diagram) -> Ratio:
     return Ratio(symbols(diagram), over, under)
 
 
-def _solvable_when_tied(posed: Posed, setup: Setup) -> bool:
-    """Tell whether the ties leave the determinant, which a ratio of two voltages does not show, other than zero."""
-    own = _drive_itself(setup)
-    if setup.under == own or not posed.ties:
+def _solvable_when_tied(posed: Posed, solved: Solved) -> bool:
+    """Tell whether the ties leave the drive's determinant other than zero, where the ratio itself hides it."""
+    if solved.drive is None or not posed.ties:
         return True
-    diagram = collected(_determinants(posed, replace(setup, over=setup.under, under=own)))
-    return build_function(_expanded_ratio(diagram), posed.ties) is not None
+    return build_function(_expanded_ratio(solved.drive), posed.ties) is not None
 
 
 def is_cheap(circuit: Circuit, diagram: Diagram) -> bool:
@@ -315,9 +317,8 @@ def _idle_parts(posed: Posed, answers: list[Answer | BigAnswer]) -> list[Remark]
         if isinstance(answer, BigAnswer):
             moved |= set(symbols(answer.diagram))
             continue
-        untied = build_function(answer.ratio, {})
-        if untied is not None:
-            moved |= symbols_in(untied.function)
+        untied = build_function(answer.ratio, {}) if posed.ties else None
+        moved |= symbols_in(answer.function if untied is None else untied.function)
     asked = ", ".join(answer.ask.name for answer in answers)
     return [
         Remark(part.place, f"part `{part.label}` has no influence on what is asked ({asked})")

@@ -9,11 +9,11 @@ from typing import Any
 import sympy
 
 from symcirc.complaints import Complaint, Remark, nearest
-from symcirc.derivation import MOST_PRODUCTS, Answer, BigAnswer, Derivation, Progress, derive, pose
-from symcirc.elimination.solve import silent
+from symcirc.derivation import MOST_PRODUCTS, Answer, BigAnswer, Derivation, derive, pose
 from symcirc.goal import Goal, build_goal, symbol, target_symbols
 from symcirc.match.problem import Branch, Problem, Refusal
 from symcirc.match.solve import solve
+from symcirc.progress import Progress, silent
 from symcirc.proof import prove
 from symcirc.sheet.exact import exact_number
 from symcirc.sheet.expression import names

@@ -7,15 +7,17 @@ on the sparse matrices of circuits few column sets are alive at once.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 
 from sympy.polys.rings import PolyElement, PolyRing
+
+from symcirc.progress import Progress
 
 Row = Mapping[int, PolyElement]
 
 
 def maximal_minors(
-    rows: Sequence[Row], columns: int, ring: PolyRing, allowed: set[int], progress: Callable[[str], None]
+    rows: Sequence[Row], columns: int, ring: PolyRing, allowed: set[int], progress: Progress
 ) -> dict[int, PolyElement]:
     """Return, for a matrix with one column more than rows, its minor without each allowed column.
 

@@ -2,25 +2,20 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-
 from sympy.polys.domains import ZZ
 from sympy.polys.orderings import lex
 from sympy.polys.rings import PolyElement, PolyRing
 
 from symcirc.elimination.minors import maximal_minors
 from symcirc.nodal.equations import System, Term, Weight
+from symcirc.progress import Progress, silent
 from symcirc.ratio import Coefficient, Ratio
 
 #: How each kind of symbol's weight reads in exponents of (symbol, s): the weight of a resistor is 1/R.
 EXPONENTS = {"R": (-1, 0), "Z": (-1, 0), "C": (1, 1), "L": (-1, -1), "Y": (1, 0), "gain": (1, 0)}
 
 
-def silent(line: str) -> None:
-    """Take a line of progress and show it nowhere."""
-
-
-def solve(system: System, progress: Callable[[str], None] = silent) -> Ratio | None:
+def solve(system: System, progress: Progress = silent) -> Ratio | None:
     """Return the asked ratio ``over / under`` of a nodal system, or None where the equations are singular.
 
     Where ``under`` is zero whatever the drive is, the ratio's denominator is empty. By Cramer's rule over the

@@ -10,13 +10,12 @@ from typing import Any
 import sympy
 
 from symcirc.complaints import Complaint, listed
-from symcirc.derivation import Posed, solved_diagram
+from symcirc.derivation import Posed, solve_ask
 from symcirc.report.big import ties_of
 from symcirc.report.quantities import ask_text
 from symcirc.sheet.exact import exact_number
 from symcirc.sheet.expression import names
 from symcirc.sheet.model import Ask
-from symcirc.trees.collect import collected
 from symcirc.trees.count import count
 from symcirc.trees.diagram import Diagram
 from symcirc.trees.evaluate import polynomials
@@ -44,7 +43,7 @@ class Coefficient:
 
 def terms(posed: Posed, wanted: Container[str] | None) -> dict[str, tuple[int, int]]:
     """Return how many products stand over and under the line of every ask, before collection."""
-    return {ask.name: count(solved_diagram(posed, setup)) for ask, setup in posed.wanted(wanted)}
+    return {ask.name: count(solve_ask(posed, setup).walked) for ask, setup in posed.wanted(wanted)}
 
 
 def terms_json(posed: Posed, wanted: Container[str] | None) -> dict[str, Any]:
@@ -77,7 +76,7 @@ def largest_of(
     Raises Complaint where a symbol has no number, or one that depends on s.
     """
     for ask, setup in posed.wanted(wanted):
-        diagram = collected(solved_diagram(posed, setup))
+        diagram = solve_ask(posed, setup).collected
         values = _values(posed, ask, diagram)
         sides = []
         for root, whole in zip(diagram.roots, polynomials(diagram, values), strict=True):

@@ -18,9 +18,9 @@ from sympy.polys.rings import PolyElement, PolyRing
 from symcirc.circuit.amplifier import gain_symbol
 from symcirc.circuit.model import Circuit, Setup
 from symcirc.elimination.minors import maximal_minors
-from symcirc.elimination.solve import silent
 from symcirc.nodal import System, build_system
 from symcirc.nodal.equations import Equation, Term, Weight
+from symcirc.progress import silent
 from symcirc.sheet.expression import Expression
 from symcirc.sheet.model import Device
 from symcirc.stability.numbers import PI, root_of
