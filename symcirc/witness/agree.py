@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
+import itertools
 import math
 import random
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Iterator, Mapping
 from dataclasses import dataclass
-from typing import Any
+from typing import Any, NoReturn
 
 import mpmath
 import numpy as np
@@ -40,6 +41,16 @@ class Evidence:
 
     points: int
     departure: float
+
+
+@dataclass(frozen=True)
+class Point:
+    """Random values of the free symbols, a complex frequency, the numeric ratio there, its matrix's condition."""
+
+    values: Mapping[str, float]
+    s: complex
+    ratio: complex
+    condition: float
 
 
 def numeric_ratio(
@@ -106,20 +117,12 @@ def confirm(
     matrices are well scaled. Where ties hold numbers that spoil the scale, the solve is repeated with 60 digits.
     Raises InternalFault where the two disagree.
     """
-    generator = random.Random(f"{setup.ask} {len(circuit.parts)}")  # seeded: the same points on every run
-    free = sorted(_free_symbols(circuit, ties))
-    departures: list[float] = []
-    for _ in range(MOST_TRIES):
-        values, s = _random_point(free, generator)
-        try:
-            there, condition = numeric_ratio(circuit, setup, ties, values, s)
-        except (np.linalg.LinAlgError, ZeroDivisionError):
-            continue
-        if condition < WORST_CONDITION and np.isfinite(there):
-            departures.append(_departure(setup, value_of(function, values, s), there))
-        if len(departures) == POINTS:
-            return Evidence(POINTS, max(departures))
-    return _confirm_precisely(circuit, setup, ties, function, free)
+    departures = (
+        _departure(setup, value_of(function, point.values, point.s), point.ratio)
+        for point in _solved_points(circuit, setup, ties)
+        if point.condition < WORST_CONDITION
+    )
+    return _evidence(departures, POINTS) or _confirm_precisely(circuit, setup, ties, function)
 
 
 def confirm_values(
@@ -134,49 +137,63 @@ def confirm_values(
     A big circuit's matrix magnifies rounding more, so its condition is allowed for: a departure is taken for
     rounding up to 1e-14 times the condition where that is more than the tolerance.
     """
-    generator = random.Random(f"{setup.ask} {len(circuit.parts)}")
-    free = sorted(_free_symbols(circuit, ties))
-    points = POINTS if len(circuit.graph) <= MANY_NODES else 1
-    departures: list[float] = []
-    for _ in range(MOST_TRIES):
-        values, s = _random_point(free, generator)
-        there, condition = numeric_ratio(circuit, setup, ties, values, s)
-        if not condition < BIG_CONDITION:
-            continue
-        known = complete(values, ties, s)
-        here = value(known, s) * _loop_factor(setup, known)
-        departures.append(_departure(setup, here, there, max(TOLERANCE, 1e-14 * condition)))
-        if len(departures) == points:
-            return Evidence(points, max(departures))
-    raise InternalFault(f"no point was found at which {setup.ask} could be confirmed by a numeric solve")
+
+    def departure(point: Point) -> float:
+        known = complete(point.values, ties, point.s)
+        here = value(known, point.s) * _loop_factor(setup, known)
+        return _departure(setup, here, point.ratio, max(TOLERANCE, 1e-14 * point.condition))
+
+    points = (p for p in _solved_points(circuit, setup, ties) if p.condition < BIG_CONDITION)
+    wanted = POINTS if len(circuit.graph) <= MANY_NODES else 1
+    return _evidence(map(departure, points), wanted) or _unconfirmed(setup)
 
 
 def _confirm_precisely(
-    circuit: Circuit,
-    setup: Setup,
-    ties: Mapping[str, Expression],
-    function: TransferFunction,
-    free: list[str],
+    circuit: Circuit, setup: Setup, ties: Mapping[str, Expression], function: TransferFunction
 ) -> Evidence:
-    generator = random.Random(setup.ask)
-    departures: list[float] = []
-    with mpmath.workdps(60):
-        for _ in range(MOST_TRIES):
-            values, point = _random_point(free, generator)
+    def departures() -> Iterator[float]:
+        for values, point in _random_points(circuit, ties, setup.ask):
             exact, s = {name: mpmath.mpf(v) for name, v in values.items()}, mpmath.mpc(point)
             try:
                 there = precise_ratio(circuit, setup, ties, exact, s)
             except ZeroDivisionError:
                 continue
-            departures.append(_departure(setup, value_of(function, exact, s, mpmath.pi), there))
-            if len(departures) == POINTS:
-                return Evidence(POINTS, max(departures))
+            yield _departure(setup, value_of(function, exact, s, mpmath.pi), there)
+
+    with mpmath.workdps(60):
+        return _evidence(departures(), POINTS) or _unconfirmed(setup)
+
+
+def _evidence(departures: Iterable[float], points: int) -> Evidence | None:
+    """Return the evidence of the first so many departures, or None where there are fewer."""
+    found = list(itertools.islice(departures, points))
+    return Evidence(points, max(found)) if len(found) == points else None
+
+
+def _unconfirmed(setup: Setup) -> NoReturn:
     raise InternalFault(f"no point was found at which {setup.ask} could be confirmed by a numeric solve")
 
 
-def _random_point(free: list[str], generator: random.Random) -> tuple[dict[str, float], complex]:
-    values = {name: generator.uniform(0.5, 2.0) for name in free}
-    return values, complex(generator.uniform(0.1, 0.6), generator.uniform(0.6, 1.6))
+def _solved_points(circuit: Circuit, setup: Setup, ties: Mapping[str, Expression]) -> Iterator[Point]:
+    """Yield random points with the numeric ratio there, those left out at which there is none."""
+    for values, s in _random_points(circuit, ties, f"{setup.ask} {len(circuit.parts)}"):
+        try:
+            ratio, condition = numeric_ratio(circuit, setup, ties, values, s)
+        except (np.linalg.LinAlgError, ZeroDivisionError):
+            continue
+        if np.isfinite(ratio):
+            yield Point(values, s, ratio, condition)
+
+
+def _random_points(
+    circuit: Circuit, ties: Mapping[str, Expression], seed: str
+) -> Iterator[tuple[dict[str, float], complex]]:
+    """Yield values of the free symbols and a complex frequency, the same on every run."""
+    generator = random.Random(seed)
+    free = sorted(_free_symbols(circuit, ties))
+    for _ in range(MOST_TRIES):
+        values = {name: generator.uniform(0.5, 2.0) for name in free}
+        yield values, complex(generator.uniform(0.1, 0.6), generator.uniform(0.6, 1.6))
 
 
 def _departure(setup: Setup, here: Any, there: Any, tolerance: float = TOLERANCE) -> float:
