@@ -10,7 +10,7 @@ from collections.abc import Sequence
 from symcirc.command.progress import ProgressLine
 from symcirc.command.words import read_words
 
-DONE, NOT_MET, MEND, FAULT, STOPPED = 0, 1, 2, 70, 130
+DONE, MEND, FAULT, STOPPED = 0, 2, 70, 130
 
 
 def main(arguments: Sequence[str] | None = None) -> int:
@@ -58,5 +58,3 @@ def _run(words: Namespace, progress: ProgressLine) -> int:
             print(json.dumps({"error": complaint.as_json()}))
         print(complaint, file=sys.stderr)
         return MEND
-    except RecursionError:
-        raise RuntimeError("the program recursed too deeply") from None

@@ -15,6 +15,9 @@ from symcirc.sheet import Sheet, decode, read_sheet
 if TYPE_CHECKING:
     from symcirc.derivation import Posed
 
+#: Up to so many products an answer is written out for people, unless they say otherwise.
+MOST_FOR_PEOPLE = 400
+
 
 def read_file(path: str, what: str = "stage sheet", suffix: str = ".stage") -> Source:
     """Return the text of a file, or of standard input for ``-``; raises Complaint where it cannot be read."""
@@ -32,20 +35,17 @@ def read_file(path: str, what: str = "stage sheet", suffix: str = ".stage") -> S
     return decode(data, path)
 
 
-#: Up to so many products an answer is written out for people, unless they say otherwise.
-MOST_FOR_PEOPLE = 400
-
-
 def derive(words: Namespace, progress: ProgressLine) -> int:
     """Print the transfer functions of a sheet."""
     from symcirc.derivation import pose, pose_real
 
     sheet = read_sheet(read_file(words.sheet))
     wanted = _wanted(sheet, words.ask)
-    posed = (pose_real if words.real else pose)(sheet)
     if words.shift:
         _shift(words, sheet, wanted, progress)
-    elif words.terms or words.largest:
+        return 0
+    posed = (pose_real if words.real else pose)(sheet)
+    if words.terms or words.largest:
         _unexpanded(words, posed, wanted, progress)
     else:
         _expanded(words, posed, wanted, progress)

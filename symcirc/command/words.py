@@ -12,12 +12,12 @@ OVERVIEW = """\
 From a stage sheet (one text file: a circuit and what is asked of it) to its transfer function,
 its standard form, and the design equations for a target.
 
-  stagewright derive stage.stage     the transfer function of everything that is asked
-  stagewright match  stage.stage     the design equations and part values for the target
+  stagewright derive stage.stage             the transfer function of everything that is asked
+  stagewright match  stage.stage             the design equations and part values for the target
   stagewright check  stage.stage hand.work   whether hand algebra is true of the circuit, line by line
 
 `stagewright VERB --help` shows each verb with an example. SHEET may be - for standard input.
-Exit status: 0 done, 1 the target cannot be met, 2 something to mend, 70 a fault of the program.
+Exit status: 0 done, 1 the target cannot be met or a line is false, 2 something to mend, 70 a fault of the program.
 """
 DERIVE = """\
 Derive the transfer function of everything that the sheet asks, exactly, in its parts.
@@ -35,15 +35,14 @@ example: R1 of a first-order low-pass
   echo 'target H: lowpass butterworth, order 1, edge 1 kHz' >> lp.stage
   stagewright match lp.stage
 """
-
 CHECK = """\
 Judge a working, a person's hand algebra, line by line: is it true of the circuit, and does it
 follow from the lines above? `let Vo = V_out` gives a name; a space may stand for a product; a .tex
 file's display equations are read as well.
 
 example: a working with a false line
-  printf 'in -- R1 -- out -- C1 -- gnd\nask H = V_out/V_in\n' > lp.stage
-  printf '(V_in - V_out)/R1 = s C1 V_out\nV_out/V_in = 1/(1 - s R1 C1)\n' > lp.work
+  printf 'in -- R1 -- out -- C1 -- gnd\\nask H = V_out/V_in\\n' > lp.stage
+  printf '(V_in - V_out)/R1 = s C1 V_out\\nV_out/V_in = 1/(1 - s R1 C1)\\n' > lp.work
   stagewright check lp.stage lp.work || true
 """
 

@@ -19,8 +19,8 @@ from symcirc.sheet.model import GROUND, Device, NodeCurrent, Part, PartCurrent, 
 class Weight:
     """What stands before an unknown: ``sign`` times a symbol that enters in the way of its kind.
 
-    ``kind`` is R or Z (1/symbol), C (s*symbol), L (1/(s*symbol)), Y or gain (the symbol itself), square (its
-    square), or one (no symbol).
+    ``kind`` is R or Z (1/symbol), C (s*symbol), L (1/(s*symbol)), Y or gain (the symbol itself), or one (no
+    symbol).
     """
 
     sign: int

@@ -8,6 +8,7 @@ from symcirc.derivation import Answer, BigAnswer, Derivation
 from symcirc.nodal import build_system
 from symcirc.nodal.text import equation_text
 from symcirc.report.big import sequence_of
+from symcirc.report.envelope import envelope
 from symcirc.report.numbers import expanded_answers, numbers_for
 from symcirc.transfer.evaluate import coefficients
 from symcirc.transfer.standard import coefficient_forms, monic_forms, texts
@@ -33,8 +34,7 @@ def equations_json(derivation: Derivation) -> dict[str, Any]:
 
 
 def _object(derivation: Derivation, asks: dict[str, Any]) -> dict[str, Any]:
-    warnings = [remark.as_json() for remark in derivation.remarks]
-    return {"stage": derivation.sheet.title, "ask": asks, "warnings": warnings}
+    return envelope(derivation.sheet.title, asks, derivation.remarks)
 
 
 def _answer(derivation: Derivation, answer: Answer | BigAnswer) -> dict[str, Any]:

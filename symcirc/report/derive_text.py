@@ -9,11 +9,12 @@ from symcirc.nodal import build_system
 from symcirc.nodal.text import equation_latex, equation_text
 from symcirc.report.big import sequence_of
 from symcirc.report.facts import Fact, facts_of
+from symcirc.report.lines import aligned, counted, hanging, readable
 from symcirc.report.numbers import expanded_answers, numbers_for
 from symcirc.report.quantities import ask_text
 from symcirc.transfer.evaluate import coefficients
 from symcirc.transfer.latex import latex, latex_function, latex_name
-from symcirc.transfer.layout import WIDTH, broken, function_text
+from symcirc.transfer.layout import WIDTH, function_text
 from symcirc.transfer.standard import coefficient_forms, monic_forms
 from symcirc.transfer.text import text
 from symcirc.witness.agree import TOLERANCE
@@ -58,17 +59,15 @@ def _big(derivation: Derivation, answer: BigAnswer) -> Iterator[str]:
     over, under = answer.products
     yield ask_text(answer.ask)
     yield ""
-    yield f"{over:,} products over the line and {under:,} under it, by way of these names:"
+    yield f"{counted(over, 'product')} over the line and {under:,} under it, by way of these names:"
     wide = max((len(name) for name, _ in sequence.definitions), default=0)
     for name, expression in sequence.definitions:
-        lines = broken(f"{name:{wide}} = {expression}", WIDTH - 2)
-        yield from (("  " if k == 0 else " " * (wide + 5)) + readable(line) for k, line in enumerate(lines))
+        yield from hanging(f"  {name:{wide}} = ", expression)
     yield ""
     yield "polynomials in s" if sequence.in_s else "coefficients by powers of s"
     for label, side in (("over", sequence.numerator), ("under", sequence.denominator)):
         if sequence.in_s:
-            lines = broken(side[0], WIDTH - 10)
-            yield from (f"  {label if k == 0 else '':7} {readable(line)}" for k, line in enumerate(lines))
+            yield from hanging(f"  {label:7} ", side[0])
         else:
             yield from _coefficients(label, side)
     yield ""
@@ -77,10 +76,8 @@ def _big(derivation: Derivation, answer: BigAnswer) -> Iterator[str]:
 
 def _checked(answer: Answer | BigAnswer) -> str:
     ways = "elimination and " if isinstance(answer, Answer) and answer.eliminated else ""
-    points = (
-        f"the numeric solve of the circuit at {answer.evidence.points} random points (to {TOLERANCE:.0e})"
-    )
-    return f"checked: agrees with {ways}{points}"
+    points = counted(answer.evidence.points, "random point")
+    return f"checked: agrees with {ways}the numeric solve of the circuit at {points} (to {TOLERANCE:.0e})"
 
 
 def _coefficients(label: str, side: Iterable[str]) -> Iterator[str]:
@@ -91,9 +88,7 @@ def _coefficients(label: str, side: Iterable[str]) -> Iterator[str]:
         if coefficients[power] == "0" and len(coefficients) > 1:
             continue
         head = f"  {label if first else '':7}{_power(power):>4}   "
-        lines = broken(coefficients[power], WIDTH - len(head))
-        yield head + readable(lines[0])
-        yield from (" " * len(head) + readable(line) for line in lines[1:])
+        yield from hanging(head, coefficients[power])
         first = False
 
 
@@ -107,17 +102,9 @@ def _facts(facts: list[Fact]) -> Iterator[str]:
         return
     wide = max(len(fact.what) for fact in facts)
     for fact in facts:
-        symbols = readable(text(fact.form)) if fact.form is not None else ""
-        joined = " = ".join(piece for piece in (symbols, fact.number) if piece)
-        lines = broken(joined, WIDTH - wide - 5)
-        yield f"  {fact.what:{wide}}   {lines[0]}"
-        yield from (" " * (wide + 5) + line for line in lines[1:])
+        symbols = text(fact.form) if fact.form is not None else ""
+        yield from hanging(f"  {fact.what:{wide}}   ", " = ".join(filter(None, (symbols, fact.number))))
     yield ""
-
-
-def readable(arithmetic: str) -> str:
-    """Return plain arithmetic as people write it on a terminal: ^ for powers."""
-    return arithmetic.replace("**", "^")
 
 
 def _indented(lines: list[str]) -> Iterator[str]:
@@ -145,9 +132,7 @@ def equations_text(derivation: Derivation) -> Iterator[str]:
         yield ""
         yield f"{ask_text(answer.ask)}: currents leaving each node, and the law of each source and device"
         for equation in equations:
-            lines = broken(equation_text(equation), WIDTH - wide - 5)
-            yield f"  {equation.label:{wide}}   {lines[0]}"
-            yield from (" " * (wide + 5) + line for line in lines[1:])
+            yield from hanging(f"  {equation.label:{wide}}   ", equation_text(equation))
         yield from _tied(derivation)
 
 
@@ -169,7 +154,7 @@ def derive_latex(derivation: Derivation) -> Iterator[str]:
             if fact.form is not None:
                 label = FACT_LATEX.get(fact.what) or r"\text{" + fact.what + "}"
                 rows.append(f"{label} &= {latex(fact.form)}")
-        yield from _aligned(rows)
+        yield from aligned(rows)
 
 
 def equations_latex(derivation: Derivation) -> Iterator[str]:
@@ -177,11 +162,4 @@ def equations_latex(derivation: Derivation) -> Iterator[str]:
     for answer in derivation.answers:
         yield f"% {ask_text(answer.ask)}"
         equations = build_system(derivation.circuit, answer.setup).equations
-        yield from _aligned([equation_latex(e, latex_name).replace(" = ", " &= ", 1) for e in equations])
-
-
-def _aligned(rows: list[str]) -> Iterator[str]:
-    yield r"\begin{align*}"
-    yield from (f"  {row} \\\\" for row in rows[:-1])
-    yield f"  {rows[-1]}"
-    yield r"\end{align*}"
+        yield from aligned([equation_latex(e, latex_name).replace(" = ", " &= ", 1) for e in equations])

@@ -20,6 +20,7 @@ from symcirc.transfer.function import TransferFunction
 from symcirc.transfer.kinds import Gain, character
 from symcirc.transfer.roots import roots
 from symcirc.transfer.second_order import first_order, second_order
+from symcirc.transfer.signs import positive_names
 
 
 @dataclass(frozen=True)
@@ -33,12 +34,11 @@ class Fact:
 
 @dataclass(frozen=True)
 class Numbers:
-    """The coefficients for the fixed numbers, ascending, as floats, and their poles and zeros in rad/s."""
+    """The coefficients for the fixed numbers, ascending, as floats, and the poles in rad/s."""
 
     numerator: list[float]
     denominator: list[float]
     poles: list[complex]
-    zeros: list[complex]
 
 
 def numbers_of(sheet: Sheet, answer: Answer) -> Numbers | None:
@@ -47,18 +47,13 @@ def numbers_of(sheet: Sheet, answer: Answer) -> Numbers | None:
         return None
     known: dict[str, Expr] = sheet.numbers
     above, below = exact_coefficients(answer.function, known)
-    return Numbers([float(c) for c in above], [float(c) for c in below], roots(below), roots(above))
-
-
-def positive_names(sheet: Sheet) -> set[str]:
-    """Return the names whose values cannot be negative: parts, and what is measured in ohm, F, H, S or Hz."""
-    return {n for n, s in sheet.symbols.items() if s.role == "part" or s.dimension not in (None, "ratio")}
+    return Numbers([float(c) for c in above], [float(c) for c in below], roots(below))
 
 
 def facts_of(derivation: Derivation, answer: Answer) -> list[Fact]:
     """Return the facts of one answer, in the order in which they are shown."""
     function, sheet = answer.function, derivation.sheet
-    positive = positive_names(sheet)
+    positive = positive_names(sheet.symbols)
     numbers = numbers_of(sheet, answer)
     found = character(function, positive)
     kind = found.kind + (f", order {function.order}" if function.order else "")

@@ -5,7 +5,6 @@ from __future__ import annotations
 from symcirc.complaints import Remark
 from symcirc.design import Design
 from symcirc.transfer.function import symbols_in
-from symcirc.transfer.latex import latex_name
 from symcirc.transfer.ties import natural_key
 
 
@@ -22,8 +21,3 @@ def refusal_remark(design: Design) -> Remark:
     """Return why there is no solution, at the target's place."""
     assert design.refusal is not None
     return Remark(design.goal.target.place, f"{design.refusal.cause}; {design.refusal.mend}")
-
-
-def latex_label(part: str) -> str:
-    """Return a part's name in LaTeX."""
-    return latex_name(part)

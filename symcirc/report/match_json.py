@@ -8,7 +8,8 @@ import sympy
 
 from symcirc.design import Design, Solution
 from symcirc.match.formula import condition_text, equation_latex, equation_text
-from symcirc.report.match_facts import chosen_names, latex_label, refusal_remark
+from symcirc.report.match_facts import chosen_names, refusal_remark
+from symcirc.transfer.latex import latex_name
 
 
 def match_json(design: Design) -> dict[str, Any]:
@@ -36,7 +37,7 @@ def _solution(solution: Solution) -> dict[str, Any]:
             {
                 "part": equation.part,
                 "text": equation_text(equation.formula),
-                "latex": f"{latex_label(equation.part)} = {equation_latex(equation.formula)}",
+                "latex": f"{latex_name(equation.part)} = {equation_latex(equation.formula)}",
             }
             for equation in solution.branch.equations
         ],

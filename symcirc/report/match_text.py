@@ -8,12 +8,11 @@ import sympy
 
 from symcirc.design import Design, Solution
 from symcirc.match.formula import condition_latex, condition_text, equation_latex, equation_text
-from symcirc.report.derive_text import readable
+from symcirc.report.lines import aligned, hanging, readable
 from symcirc.report.match_facts import chosen_names, refusal_remark
 from symcirc.report.quantities import ask_text
 from symcirc.transfer.engineering import engineering
 from symcirc.transfer.latex import latex_name
-from symcirc.transfer.layout import WIDTH, broken
 
 
 def match_text(design: Design) -> Iterator[str]:
@@ -84,8 +83,7 @@ def _solution(design: Design, solution: Solution) -> Iterator[str]:
     rows = [(e.part, equation_text(e.formula)) for e in solution.branch.equations]
     wide = max((len(part) for part, _ in rows), default=0)
     for part, formula in rows:
-        lines = broken(f"{part:{wide}} = {formula}", WIDTH - 2)
-        yield from (("  " if k == 0 else " " * (wide + 5)) + readable(line) for k, line in enumerate(lines))
+        yield from hanging(f"  {part:{wide}} = ", formula)
     conditions = [readable(condition_text(c)) for c in solution.branch.conditions]
     if conditions:
         yield "  real and positive where"
@@ -117,7 +115,4 @@ def match_latex(design: Design) -> Iterator[str]:
         rows += [
             rf"\text{{where }} & {condition_latex(condition)}" for condition in solution.branch.conditions
         ]
-        yield r"\begin{align*}"
-        yield from (f"  {row} \\\\" for row in rows[:-1])
-        yield f"  {rows[-1]}"
-        yield r"\end{align*}"
+        yield from aligned(rows)

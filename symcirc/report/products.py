@@ -12,10 +12,13 @@ import sympy
 from symcirc.complaints import Complaint, listed
 from symcirc.derivation import Posed, solve_ask
 from symcirc.report.big import ties_of
+from symcirc.report.envelope import envelope
+from symcirc.report.lines import counted, readable
 from symcirc.report.quantities import ask_text
 from symcirc.sheet.exact import exact_number
 from symcirc.sheet.expression import names
 from symcirc.sheet.model import Ask
+from symcirc.stability.numbers import as_fraction
 from symcirc.trees.count import count
 from symcirc.trees.diagram import Diagram
 from symcirc.trees.evaluate import polynomials
@@ -50,12 +53,7 @@ def terms_json(posed: Posed, wanted: Container[str] | None) -> dict[str, Any]:
     """Return the numbers of products as the design's JSON object."""
     found = terms(posed, wanted)
     asks = {name: {"terms": dict(zip(SIDES, counts, strict=True))} for name, counts in found.items()}
-    return _object(posed, asks)
-
-
-def _object(posed: Posed, asks: dict[str, Any]) -> dict[str, Any]:
-    warnings = [remark.as_json() for remark in posed.sheet.remarks]
-    return {"stage": posed.sheet.title, "ask": asks, "warnings": warnings}
+    return envelope(posed.sheet.title, asks, posed.sheet.remarks)
 
 
 def terms_text(posed: Posed, wanted: Container[str] | None) -> Iterator[str]:
@@ -64,8 +62,8 @@ def terms_text(posed: Posed, wanted: Container[str] | None) -> Iterator[str]:
     for name, (over, under) in terms(posed, wanted).items():
         yield ""
         yield ask_text(posed.sheet.ask(name))
-        yield f"  over    {over:,} products" if over != 1 else "  over    1 product"
-        yield f"  under   {under:,} products" if under != 1 else "  under   1 product"
+        yield f"  over    {counted(over, 'product')}"
+        yield f"  under   {counted(under, 'product')}"
 
 
 def largest_of(
@@ -105,11 +103,7 @@ def _values(posed: Posed, ask: Ask, diagram: Diagram) -> dict[str, Fraction]:
             f"the largest products of `{ask.name}` need numbers, and {listed(missing[:8])} have none",
             f"fix {', '.join(f'{name} = value' for name in missing[:3])}",
         )
-    return {name: _fraction(known[name]) for name in needed}
-
-
-def _fraction(number: sympy.Expr) -> Fraction:
-    return Fraction(int(number.p), int(number.q)) if number.is_Rational else Fraction(float(number))
+    return {name: as_fraction(known[name]) for name in needed}
 
 
 def product_text(product: Product) -> str:
@@ -133,7 +127,7 @@ def largest_text(posed: Posed, wanted: Container[str] | None, most: int) -> Iter
                     continue
                 yield f"  {label:7} s^{power:<3} {float(coefficient.value):.6g}, shown: {coefficient.explained:.2%}"
                 for product in coefficient.products:
-                    shown = product_text(product).replace("**", "^")
+                    shown = readable(product_text(product))
                     yield f"    {coefficient.share(product):>9.2%}   {shown}"
 
 
@@ -142,7 +136,7 @@ def largest_json(posed: Posed, wanted: Container[str] | None, most: int) -> dict
     asks = {}
     for ask, sides in largest_of(posed, wanted, most):
         asks[ask.name] = {"largest": {name: _side(side) for name, side in zip(SIDES, sides, strict=True)}}
-    return _object(posed, asks)
+    return envelope(posed.sheet.title, asks, posed.sheet.remarks)
 
 
 def _side(side: list[Coefficient]) -> list[dict[str, Any]]:

@@ -10,6 +10,8 @@ import sympy
 
 from symcirc.derivation import Answer, Derivation
 from symcirc.match.formula import equation_text
+from symcirc.report.envelope import envelope
+from symcirc.report.lines import readable
 from symcirc.report.numbers import expanded_answers, missing_numbers
 from symcirc.report.quantities import ask_text
 from symcirc.stability.pair import PairChange, PairShift, pair_shift
@@ -63,9 +65,9 @@ def shift_text(ideal: Derivation, real: Derivation) -> Iterator[str]:
         if formulas:
             yield "  to first order in one over each gain and gbw (Hz); the changes add up"
         for shift in formulas:
-            yield f"    dw0/w0 by {shift.parameter}: {_readable(shift.omega0)}"
+            yield f"    dw0/w0 by {shift.parameter}: {_shown(shift.omega0)}"
             if shift.q is not None:
-                yield f"    dQ/Q   by {shift.parameter}: {_readable(shift.q)}"
+                yield f"    dQ/Q   by {shift.parameter}: {_shown(shift.q)}"
         numbers = _in_numbers(ideal, real, answer)
         if numbers is None:
             yield "  (with every value fixed, the shift of each pole in numbers follows here)"
@@ -79,8 +81,8 @@ def _written(formula: sympy.Expr) -> str:
     return equation_text(sympy.factor(formula) if short else formula)
 
 
-def _readable(formula: sympy.Expr) -> str:
-    return _written(formula).replace("**", "^")
+def _shown(formula: sympy.Expr) -> str:
+    return readable(_written(formula))
 
 
 def _poles_text(shifts: PoleShifts) -> Iterator[str]:
@@ -140,11 +142,7 @@ def shift_json(ideal: Derivation, real: Derivation) -> dict[str, Any]:
                 "others": None if numbers is None else [_complex(pole) for pole in numbers.others],
             }
         }
-    return {
-        "stage": ideal.sheet.title,
-        "ask": asks,
-        "warnings": [remark.as_json() for remark in ideal.remarks],
-    }
+    return envelope(ideal.sheet.title, asks, ideal.remarks)
 
 
 def _formula_json(shift: FirstOrder) -> dict[str, str | None]:

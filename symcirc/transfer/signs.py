@@ -24,14 +24,17 @@ def sign_of(coefficient: PolyElement, positive: set[str]) -> int:
     return signs.pop()
 
 
+def positive_names(symbols: Mapping[str, Symbol]) -> set[str]:
+    """Return the names whose values cannot be negative: parts, and what is measured in ohm, F, H, S or Hz."""
+    return {name for name, s in symbols.items() if s.role == "part" or s.dimension not in (None, "ratio")}
+
+
 def sign_remarks(function: TransferFunction, symbols: Mapping[str, Symbol], ask: Ask) -> list[Remark]:
     """Return a remark where a coefficient of the denominator has the wrong sign for every part value.
 
     All coefficients of a stable denominator have one sign (Stodola's condition).
     """
-    positive = {"pi"} | {
-        name for name, s in symbols.items() if s.role == "part" or s.dimension not in (None, "ratio")
-    }
+    positive = {"pi"} | positive_names(symbols)
     signs = [sign_of(c, positive) if c else 0 for c in function.denominator]
     last = next((sign for sign in reversed(signs) if sign), 0)
     wrong = [power for power, sign in enumerate(signs) if sign == -last and sign]

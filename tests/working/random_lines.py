@@ -10,6 +10,8 @@ import random
 import re
 from dataclasses import dataclass
 
+from sympy.polys.rings import PolyElement
+
 from symcirc.circuit.model import CurrentDrive, VoltageDrive
 from symcirc.complaints import Complaint
 from symcirc.derivation import Answer, derive, pose
@@ -78,8 +80,8 @@ def _sum_of(rng: random.Random, sheet: Sheet, laws: list[str]) -> str:
 
 
 def _written(function: TransferFunction) -> str:
-    def side(coefficients: tuple[object, ...]) -> str:
-        terms = [f"({c.as_expr()})*s**{k}" for k, c in enumerate(coefficients) if c]  # type: ignore[attr-defined]
+    def side(coefficients: tuple[PolyElement, ...]) -> str:
+        terms = [f"({c.as_expr()})*s**{k}" for k, c in enumerate(coefficients) if c]
         return " + ".join(terms) or "0"
 
     return f"({side(function.numerator)})/({side(function.denominator)})"
