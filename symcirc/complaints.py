@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import difflib
 import re
+from bisect import bisect_right
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass, field
 from functools import cached_property
@@ -32,6 +33,15 @@ class Source:
     def lines(self) -> tuple[str, ...]:
         """The lines without their line ends."""
         return tuple(line.rstrip("\r") for line in self.text.split("\n"))
+
+    @cached_property
+    def _starts(self) -> list[int]:
+        return [0, *(match.end() for match in re.finditer("\n", self.text))]
+
+    def spot(self, offset: int) -> tuple[int, int]:
+        """Return the line and the column of a character of the text, by its offset."""
+        line = bisect_right(self._starts, offset)
+        return line, offset - self._starts[line - 1] + 1
 
     def line(self, number: int) -> str:
         """Return line ``number`` (counted from 1) without its line end; empty where there is none."""

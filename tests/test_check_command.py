@@ -21,10 +21,31 @@ def test_a_slip_fails_and_what_follows_from_it_is_carried(capsys):
     assert verdicts == {2: "defines", 3: "fails", 4: "holds", 5: "carried"}
 
 
-def test_the_words_say_which_line_to_look_at_first(capsys):
+def test_the_words_mark_the_slip_mend_it_and_say_what_to_mend_first(capsys):
     called = call(capsys, "check", STAGE, EXAMPLES / "hive_antialias_slip.work")
-    assert "look first at line 3" in called.out
-    assert "carried" in called.out
+    rows = called.out.splitlines()
+    wrong = next(k for k, row in enumerate(rows) if "fails" in row)
+    assert rows[wrong].index("Vo)/R2") == rows[wrong + 1].index("^^")
+    assert rows[wrong + 2].strip() == "the sign of the current through R2 at node a is wrong"
+    assert rows[wrong + 3].strip() == "mend: (Vi - Va)/R1 = s C1 Va + (Va - Vo)/R2 + Va/R3"
+    assert "mend line 3 first: it is false of the circuit; line 5 carries it on" in called.out
+    assert "with the first mend of each line put in, every line holds" in called.out
+
+
+def test_suggestions_are_whole_lines_in_the_json(capsys):
+    called = call(capsys, "check", STAGE, EXAMPLES / "hive_antialias_slip.work", "--json")
+    wrong = next(line for line in called.json["lines"] if line["verdict"] == "fails")
+    assert wrong["suggestions"] == ["(Vi - Va)/R1 = s C1 Va + (Va - Vo)/R2 + Va/R3"]
+    assert wrong["note"] == "the sign of the current through R2 at node a is wrong"
+
+
+def test_latex_shows_every_equality_with_its_verdict(capsys):
+    called = call(capsys, "check", STAGE, EXAMPLES / "hive_antialias_slip.work", "--latex")
+    assert called.status == 1
+    assert r"\frac{Vi - Va}" not in called.out
+    assert called.out.count(r"&& \text{") == 3
+    assert r"\text{carried}" in called.out
+    assert called.out.rstrip().splitlines()[-1].startswith("% ")
 
 
 @pytest.mark.parametrize(

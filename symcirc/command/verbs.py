@@ -13,7 +13,7 @@ from symcirc.complaints import Complaint, Place, Remark, Source, nearest
 from symcirc.sheet import Sheet, decode, read_sheet
 
 if TYPE_CHECKING:
-    from symcirc.derivation import Posed
+    from symcirc.derivation import Derivation, Posed
 
 #: Up to so many products an answer is written out for people, unless they say otherwise.
 MOST_FOR_PEOPLE = 400
@@ -82,9 +82,12 @@ def _expanded(words: Namespace, posed: Posed, wanted: set[str] | None, progress:
     from symcirc.derivation import MOST_PRODUCTS
     from symcirc.derivation import derive as derive_posed
 
-    for_people = not (words.json or words.values)
+    for_people = words.steps or not (words.json or words.values)
     most = words.most or (MOST_FOR_PEOPLE if for_people else MOST_PRODUCTS)
     derivation = derive_posed(posed, wanted, most, progress)
+    if words.steps:
+        _steps(words, posed, derivation, progress)
+        return
     if words.json:
         from symcirc.report.derive_json import derive_json, equations_json, values_json
 
@@ -100,6 +103,16 @@ def _expanded(words: Namespace, posed: Posed, wanted: set[str] | None, progress:
     else:
         lines = written.derive_latex(derivation) if words.latex else written.derive_text(derivation)
     _print_text(lines, derivation.remarks, progress)
+
+
+def _steps(words: Namespace, posed: Posed, derivation: Derivation, progress: ProgressLine) -> None:
+    from symcirc.report import steps
+
+    if words.json:
+        _print_json(steps.derivation_steps_json(posed, derivation), progress)
+        return
+    write = steps.derivation_steps_latex if words.latex else steps.derivation_steps_text
+    _print_text(write(posed, derivation), derivation.remarks, progress)
 
 
 def match(words: Namespace, progress: ProgressLine) -> int:
@@ -123,15 +136,19 @@ def match(words: Namespace, progress: ProgressLine) -> int:
 def check(words: Namespace, progress: ProgressLine) -> int:
     """Judge a working against a sheet; status 1 where a line fails, is carried or unread."""
     from symcirc.derivation import pose, pose_real
-    from symcirc.report.check_text import check_text
-    from symcirc.working.check import check_posed
+    from symcirc.slips import check_and_mend
 
     posed = (pose_real if words.real else pose)(read_sheet(read_file(words.sheet)))
-    checked = check_posed(posed, read_file(words.working, "working", ".work"))
+    progress("checking")
+    checked = check_and_mend(posed, read_file(words.working, "working", ".work"))
     if words.json:
         _print_json(checked.as_json(), progress)
-    else:
-        _print_text(check_text(checked), posed.sheet.remarks, progress)
+        return checked.exit_status
+    from symcirc.report.check_latex import check_latex
+    from symcirc.report.check_text import check_text
+
+    lines = check_latex(checked) if words.latex else check_text(checked)
+    _print_text(lines, posed.sheet.remarks, progress)
     return checked.exit_status
 
 

@@ -69,6 +69,7 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     form.add_argument("--latex", action="store_true", help="print LaTeX")
     what = derive.add_mutually_exclusive_group()
     what.add_argument("--equations", action="store_true", help="print the nodal equations that are solved")
+    what.add_argument("--steps", action="store_true", help="print the derivation line by line")
     what.add_argument("--values", action="store_true", help="print coefficients for the fixed numbers")
     what.add_argument("--terms", action="store_true", help="count the products, without expanding any")
     what.add_argument(
@@ -84,7 +85,9 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     form.add_argument("--latex", action="store_true", help="print LaTeX")
     check = _verb(verbs, "check", "whether hand algebra is true of the circuit", CHECK)
     check.add_argument("working", metavar="WORKING", help="the working, or - for standard input")
-    check.add_argument("--json", action="store_true", help="print one JSON object")
+    form = check.add_mutually_exclusive_group()
+    form.add_argument("--json", action="store_true", help="print one JSON object")
+    form.add_argument("--latex", action="store_true", help="print LaTeX")
     check.add_argument("--real", action="store_true", help="count the amplifiers' gain and gbw")
     return parser.parse_args(arguments)
 

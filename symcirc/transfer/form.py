@@ -20,6 +20,13 @@ class Integer:
 
 
 @dataclass(frozen=True)
+class Decimal:
+    """A number in decimals, not negative: ``text`` is as in ``0.5`` or ``7.25e-12``."""
+
+    text: str
+
+
+@dataclass(frozen=True)
 class Symbol:
     """A part, a parameter, ``pi`` or ``s``."""
 
@@ -70,7 +77,7 @@ class Negative:
     operand: Form
 
 
-Form = Integer | Symbol | Sum | Product | Divided | Power | Root | Negative
+Form = Integer | Decimal | Symbol | Sum | Product | Divided | Power | Root | Negative
 
 ZERO, ONE = Integer(0), Integer(1)
 

@@ -2,11 +2,11 @@ r"""Forms and whole functions in LaTeX.
 
 How names are written (each name in a way of its own, so that two names never look the same):
 
-- a letter and digits: ``R1`` is R_{1};
+- a letter other than V and I, and digits: ``R1`` is R_{1};
 - a part with letters: ``Rf`` is R_{\mathrm{f}};
 - a part of a block: ``S1_R1`` is R_{\mathrm{S1},1};
 - a device's parameter: ``U1_gain`` is \mathrm{gain}_{\mathrm{U1}};
-- voltages and currents: ``V_out`` is V_{out};
+- voltages and currents: ``V_out`` is V_{out}, and in a block ``V_S1_x`` is V_{\mathrm{S1},x};
 - other names of several letters: upright, \mathrm{beta}; an underscore stays, \mathrm{r\_min}.
 """
 
@@ -16,6 +16,7 @@ import re
 
 from symcirc.transfer.form import (
     ONE,
+    Decimal,
     Divided,
     Form,
     Integer,
@@ -31,7 +32,10 @@ from symcirc.transfer.form import (
 )
 from symcirc.transfer.standard import Forms
 
-_PARAMETERS = ("gain", "gbw", "gm", "rm", "ratio")
+#: Names that are no words of a sheet.
+GREEK = {"pi": r"\pi", "ω0": r"\omega_{0}"}
+#: The parameters of devices.
+PARAMETERS = ("gain", "gbw", "gm", "rm", "ratio")
 
 
 def latex(form: Form) -> str:
@@ -43,6 +47,8 @@ def latex(form: Form) -> str:
     match form:
         case Integer():
             return str(form.value)
+        case Decimal():
+            return latex_decimal(form.text)
         case Symbol():
             return latex_name(form.name)
         case Sum():
@@ -78,20 +84,33 @@ def latex_name(name: str) -> str:
 
     >>> latex_name("V_out"), latex_name("k"), latex_name("Rf")
     ('V_{out}', 'k', 'R_{\\mathrm{f}}')
+    >>> latex_name("V_S1_x"), latex_name("V1")
+    ('V_{\\mathrm{S1},x}', '\\mathrm{V1}')
     """
-    if name == "pi":
-        return r"\pi"
-    if re.fullmatch(r"[VI]_[A-Za-z0-9]+", name):
-        return f"{name[0]}_{{{name[2:]}}}"
+    if name in GREEK:
+        return GREEK[name]
     *blocks, own = name.split("_")
-    if all(blocks):
-        within = [rf"\mathrm{{{block}}}" for block in blocks]
-        if re.fullmatch(r"[RCLZY][A-Za-z0-9]+|[A-Za-z][0-9]+", own):
+    if all(blocks) and own:
+        kind, within = (blocks[0], blocks[1:]) if blocks[:1] in (["V"], ["I"]) else ("", blocks)
+        upright = [rf"\mathrm{{{block}}}" for block in within]
+        if kind:
+            return f"{kind}_{{{','.join([*upright, own])}}}"
+        if re.fullmatch(r"[RCLZY][A-Za-z0-9]+|[A-HJ-UW-Za-z][0-9]+", own):
             index = own[1:] if own[1:].isdigit() else rf"\mathrm{{{own[1:]}}}"
-            return f"{own[0]}_{{{','.join([*within, index])}}}"
-        if blocks and own in _PARAMETERS:
-            return rf"\mathrm{{{own}}}_{{{','.join(within)}}}"
+            return f"{own[0]}_{{{','.join([*upright, index])}}}"
+        if blocks and own in PARAMETERS:
+            return rf"\mathrm{{{own}}}_{{{','.join(upright)}}}"
     return name if len(name) == 1 else rf"\mathrm{{{name}}}".replace("_", r"\_")
+
+
+def latex_decimal(text: str) -> str:
+    r"""Return a number in decimals in LaTeX, its power of ten as a factor.
+
+    >>> latex_decimal("7.25e-12")
+    '7.25 \\cdot 10^{-12}'
+    """
+    mantissa, _, exponent = text.partition("e")
+    return rf"{mantissa} \cdot 10^{{{int(exponent)}}}" if exponent else mantissa
 
 
 def _sum(form: Sum) -> str:

@@ -5,7 +5,7 @@ The text means the same in the stage sheet's language and in most programming la
 
 from __future__ import annotations
 
-from symcirc.transfer.form import Divided, Form, Integer, Negative, Power, Product, Sum, Symbol
+from symcirc.transfer.form import Decimal, Divided, Form, Integer, Negative, Power, Product, Sum, Symbol
 
 
 def text(form: Form) -> str:
@@ -19,6 +19,8 @@ def text(form: Form) -> str:
     match form:
         case Integer():
             return str(form.value)
+        case Decimal():
+            return form.text
         case Symbol():
             return form.name
         case Sum():

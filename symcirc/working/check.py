@@ -48,23 +48,31 @@ def check_posed(posed: Posed, source: Source) -> Checked:
 
 
 @dataclass(frozen=True)
-class _Claim:
-    """One equality as it was read; ``is_let`` where a ``let`` says it."""
+class Claim:
+    """One equality as it was read, number ``position`` of its line; ``is_let`` where a ``let`` says it."""
 
-    line: int
+    written: Written
+    position: int
     text: str
     left: Expression
     right: Expression
     is_let: bool
 
+    @property
+    def line(self) -> int:
+        """The line of the file: in LaTeX a row may go over several."""
+        return self.written.line if self.is_let else self.right.place.line
 
-def _claims(statement: Chain | Let, line: int) -> Iterator[_Claim]:
+
+def claims(statement: Chain | Let, written: Written) -> Iterator[Claim]:
+    """Yield the equalities of a line."""
     if isinstance(statement, Let):
-        for name, value, text in statement.bindings:
-            yield _Claim(line, f"let {text}", name, value, True)
+        for position, (name, value, text) in enumerate(statement.bindings):
+            yield Claim(written, position, f"let {text}", name, value, True)
         return
-    for (left, right), texts in zip(pairwise(statement.sides), pairwise(statement.texts), strict=True):
-        yield _Claim(right.place.line, " = ".join(texts), left, right, False)
+    equalities = zip(pairwise(statement.sides), pairwise(statement.texts), strict=True)
+    for position, ((left, right), texts) in enumerate(equalities):
+        yield Claim(written, position, " = ".join(texts), left, right, False)
 
 
 class Checker:
@@ -93,7 +101,7 @@ class Checker:
             except Complaint as complaint:
                 self._unread(written.line, written.text, complaint)
                 continue
-            for claim in _claims(statement, written.line):
+            for claim in claims(statement, written):
                 try:
                     self.lines.append(self._judged(claim))
                 except Complaint as complaint:
@@ -115,7 +123,7 @@ class Checker:
 
     # one equality -----------------------------------------------------------------------------------------------
 
-    def _judged(self, claim: _Claim) -> Line:
+    def _judged(self, claim: Claim) -> Line:
         if claim.is_let and isinstance(claim.left, Name) and self._may_name(claim.left.text):
             return self._define(claim, claim.left, self._looked_up(claim.right))
         left, right = self._looked_up(claim.left), self._looked_up(claim.right)
@@ -158,7 +166,7 @@ class Checker:
                 "name the current of a part, as in I_R1",
             )
 
-    def _define(self, claim: _Claim, name: Name, value: Expression) -> Line:
+    def _define(self, claim: Claim, name: Name, value: Expression) -> Line:
         for used in names(value):
             self._check_name(used)
         size = degrees(value, self.degrees)
@@ -169,7 +177,7 @@ class Checker:
         self.degrees[self.lexicon.define(name.text, value)] = size
         return Line(claim.line, claim.text, "defines", None, _joined(notes))
 
-    def _equality(self, claim: _Claim, left: Expression, right: Expression) -> Line:
+    def _equality(self, claim: Claim, left: Expression, right: Expression) -> Line:
         for side in (left, right):
             degrees(side, self.degrees)
         truth = truth_of(left, right, self.context, self.judges)
@@ -182,7 +190,8 @@ class Checker:
         elif not truth.holds:
             self._remember_try(left, right)
         note = _joined([truth.note, unit_trouble(left, right, self.lexicon)])
-        equation = Equation(left, right, self.context)
+        names_then = self.lexicon if truth.holds else self.lexicon.copy()
+        equation = Equation(left, right, self.context, claim.written, claim.position, names_then)
         return Line(claim.line, claim.text, verdict, follows, note, equation=equation)
 
     def _something_failed(self) -> bool:

@@ -43,9 +43,15 @@ def random_numbers(posed: Posed, seed: str, *, given: bool) -> dict[str, Measure
             known[name] = measured.exact(mpmath.mpf(number.evalf(DIGITS)))
         scale = _corner(posed, known)
     s = mpmath.mpc(_draw(generator), _draw(generator)) * scale
-    known |= {"s": measured.exact(s), "pi": measured.exact(+mpmath.pi)}
+    return completed(posed, known | {"s": measured.exact(s), "pi": measured.exact(+mpmath.pi)})
+
+
+def completed(posed: Posed, free: Mapping[str, Measured]) -> dict[str, Measured]:
+    """Return the values of free names, s and pi with those of tied names, j, w and f; raises as ``random_numbers``."""
+    known = dict(free)
     for name in tie_order(posed.ties):
         known[name] = measured.evaluate(posed.ties[name], known.__getitem__)
+    s = known["s"].value
     known["@j"] = Measured(mpmath.mpc(0, 1), mpmath.mpf(0))
     known["@w"] = measured.exact(s / mpmath.mpc(0, 1))
     known["@f"] = measured.exact(s / mpmath.mpc(0, 2 * mpmath.pi))

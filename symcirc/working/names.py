@@ -104,6 +104,19 @@ class Lexicon:
         self._by_key[key] = Meaning("defined", key)
         return key
 
+    def copy(self) -> Lexicon:
+        """Return the names as they are known now; what is looked up in the copy has a meaning here too."""
+        copied = Lexicon(
+            self.sheet, self.symbols, self.has_shape, dict(self.definitions), dict(self._defined)
+        )
+        copied._by_key = self._by_key
+        return copied
+
+    @property
+    def defined(self) -> dict[str, str]:
+        """The names that the working defines, each with its key."""
+        return dict(self._defined)
+
     def known(self) -> list[str]:
         """Return all names that could have been meant, for hints."""
         voltages = [f"V_{node}" for node in self.sheet.node_places]

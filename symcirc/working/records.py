@@ -5,20 +5,36 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import Literal
 
-from symcirc.complaints import Complaint
+from symcirc.complaints import Complaint, Place
 from symcirc.sheet.expression import Expression
 from symcirc.working.context import Context
+from symcirc.working.names import Lexicon
+from symcirc.working.written import Written
 
 Verdict = Literal["holds", "carried", "fails", "defines", "unread"]
 
 
 @dataclass(frozen=True)
 class Equation:
-    """The two sides of an equality, every node with its place, and the drives that it is judged under."""
+    """The two sides of an equality, every node with its place, and the drives that it is judged under.
+
+    It is number ``position`` of the equalities that ``written`` says, with the names that ``lexicon`` knew then.
+    """
 
     left: Expression
     right: Expression
     context: Context
+    written: Written
+    position: int
+    lexicon: Lexicon
+
+
+@dataclass(frozen=True)
+class Slip:
+    """Where a line goes wrong, and how, in one sentence."""
+
+    place: Place
+    sentence: str
 
 
 @dataclass(frozen=True)
@@ -35,6 +51,7 @@ class Line:
     follows: bool | None
     note: str | None
     suggestions: tuple[str, ...] = ()
+    slip: Slip | None = field(default=None, compare=False)
     equation: Equation | None = field(default=None, repr=False, compare=False)
     complaint: Complaint | None = field(default=None, repr=False, compare=False)
 
@@ -52,10 +69,15 @@ class Line:
 
 @dataclass(frozen=True)
 class Checked:
-    """A working with its verdicts; ``missing`` names nodes whose current law the answer needs and no line uses."""
+    """A working with its verdicts; ``missing`` names nodes whose current law the answer needs and no line uses.
+
+    ``still_false`` are the lines of the file that are false when the first mend of each line is put in; None where
+    that was not tried.
+    """
 
     lines: tuple[Line, ...]
     missing: tuple[str, ...]
+    still_false: tuple[int, ...] | None = None
 
     @property
     def exit_status(self) -> int:

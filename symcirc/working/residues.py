@@ -49,6 +49,12 @@ def random_residues(posed: Posed, seed: str, *, given: bool) -> dict[str, int]:
     known = {name: generator.randrange(2, PRIME) for name in [*free_names(posed), "s", "pi"]}
     if given:
         known |= {name: of_exact(number, known["pi"]) for name, number in posed.sheet.numbers.items()}
+    return completed(posed, known)
+
+
+def completed(posed: Posed, free: Mapping[str, int]) -> dict[str, int]:
+    """Return the values of free names, s and pi with those of tied names, j, w and f; raises as ``random_residues``."""
+    known = dict(free)
     for name in tie_order(posed.ties):
         known[name] = evaluate(posed.ties[name], known.__getitem__)
     known["@j"] = imaginary_unit()
