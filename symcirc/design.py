@@ -3,24 +3,31 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 import sympy
 
+from symcirc.cascade.combine import MOST_SOLUTIONS, combinations, covering, product_factor, stage_factors
+from symcirc.cascade.factors import Factored, factored
+from symcirc.cascade.search import Found, search
+from symcirc.cascade.stages import Stage, cascade_stages
+from symcirc.circuit.model import Setup
 from symcirc.complaints import Complaint, Remark, nearest
-from symcirc.derivation import MOST_PRODUCTS, Answer, BigAnswer, Derivation, derive, pose
-from symcirc.goal import Goal, build_goal, symbol, target_symbols
+from symcirc.derivation import MOST_PRODUCTS, Answer, BigAnswer, Derivation, Posed, derive, pose
+from symcirc.goal import Goal, build_goal, symbol
 from symcirc.match.problem import Branch, Problem, Refusal
-from symcirc.match.solve import solve
+from symcirc.match.ranges import Range, ranges
+from symcirc.match.solve import FEWEST_FOR_NUMBERS, solve
+from symcirc.posing import build_problem, unknowns_in
 from symcirc.progress import Progress, silent
 from symcirc.proof import prove
-from symcirc.sheet.exact import exact_number
-from symcirc.sheet.expression import names
-from symcirc.sheet.fixes import tie_order
-from symcirc.sheet.model import Sheet, Target
+from symcirc.sheet.model import Ask, Sheet, Target
 from symcirc.transfer.function import symbols_in
 from symcirc.transfer.ties import natural_key
+
+#: Where a stage's equations have more complex solutions, the borders of its ranges are not looked for.
+MOST_FOR_RANGES = 8
 
 
 @dataclass(frozen=True)
@@ -40,41 +47,165 @@ class Solution:
 
 @dataclass(frozen=True)
 class Design:
-    """What a match comes to; ``refusal`` says why where there is no solution."""
+    """What a match comes to; ``refusal`` says why where there is no solution.
+
+    ``whole`` is the stage as one problem, ``cascade`` the stages with what each takes of the target. A cascade that
+    was refused has neither; ``present`` are the names in the ratio. ``ranges`` say where parts with a number may lie,
+    where no short condition says so: for stages of three poles and more, and for numbers that allow no solution.
+    """
 
     derivation: Derivation
-    answer: Answer
+    ask: Ask
     goal: Goal
-    problem: Problem
+    present: frozenset[str]
+    unknowns: tuple[str, ...]
+    whole: Whole | None
+    cascade: Found | None
     solutions: tuple[Solution, ...]
     refusal: Refusal | None
     remarks: tuple[Remark, ...]
+    ranges: tuple[Range, ...] = ()
+
+
+@dataclass(frozen=True)
+class Whole:
+    """A stage that was solved as one problem."""
+
+    answer: Answer
+    problem: Problem
 
 
 def design(sheet: Sheet, ask: str | None = None, progress: Progress = silent) -> Design:
     """Solve for the parts that make the asked ratio meet its target.
 
+    Stages that are separable are matched one by one, as :mod:`symcirc.cascade` shares the target out.
+
     Raises Complaint where the sheet has no target, or two and ``ask`` is None; where a circuit or a target cannot
     be used; and where too many parts are free. Raises InternalFault where a solution does not give the target.
     """
     target = pick_target(sheet, ask)
-    derivation = derive(pose(sheet), {target.ask}, MOST_PRODUCTS, progress)
+    posed = pose(sheet)
+    stages = cascade_stages(posed, target.ask, progress)
+    if stages:
+        goal = build_goal(sheet, target)
+        factors = factored(goal)
+        if factors is not None:
+            return _cascade(posed, stages, goal, factors, progress)
+    return _whole(posed, target, progress)
+
+
+def _whole(posed: Posed, target: Target, progress: Progress) -> Design:
+    derivation = derive(posed, {target.ask}, MOST_PRODUCTS, progress)
     answer = _expanded(derivation, target)
-    goal = build_goal(sheet, target)
-    problem = build_problem(sheet, answer, goal)
+    goal = build_goal(posed.sheet, target)
+    problem = build_problem(posed.sheet, answer, goal)
 
     def keep_going() -> bool:
         progress("solving the design equations")
         return False
 
     outcome = solve(problem, should_stop=keep_going)
+    present = frozenset(symbols_in(answer.function))
+    begun = Design(
+        derivation,
+        answer.ask,
+        goal,
+        present,
+        problem.unknowns,
+        Whole(answer, problem),
+        None,
+        (),
+        None,
+        derivation.remarks,
+    )
     if isinstance(outcome, Refusal):
         if outcome.kind in ("many", "target"):
             raise Complaint(target.place, outcome.cause, outcome.mend)
-        return Design(derivation, answer, goal, problem, (), outcome, derivation.remarks)
+        progress("looking for values that would do")
+        is_short = len(problem.unknowns) < FEWEST_FOR_NUMBERS
+        where = ranges(problem) if outcome.kind == "negative" and is_short else ()
+        return replace(begun, refusal=outcome, ranges=where)
     progress("proving the solutions")
-    solutions = tuple(_solution(derivation, answer, goal, problem, branch) for branch in outcome.branches)
-    return Design(derivation, answer, goal, problem, solutions, None, derivation.remarks)
+    factors = [
+        prove(derivation, answer.setup, present, goal, branch, posed.sheet.numbers)
+        for branch in outcome.branches
+    ]
+    solutions = (
+        _solution(begun, branch, problem.positives, factor)
+        for branch, factor in zip(outcome.branches, factors, strict=True)
+    )
+    return replace(begun, solutions=tuple(solutions), ranges=_ranges(problem, outcome.branches))
+
+
+def _cascade(
+    posed: Posed, stages: tuple[Stage, ...], goal: Goal, factors: Factored, progress: Progress
+) -> Design:
+    """Share a target out among the stages, and prove what they come to together."""
+    unexpanded = 0  # products: the whole stays a decision diagram, as expanded it may be huge
+    derivation = derive(posed, {goal.target.ask}, unexpanded, progress)
+    functions = [stage.answer.function for stage in stages]
+    unknowns = (name for s in stages for name in unknowns_in(s.sheet, s.answer.function))
+    begun = Design(
+        derivation,
+        derivation.answers[0].ask,
+        goal,
+        frozenset().union(*map(symbols_in, functions)),
+        tuple(unknowns),
+        None,
+        None,
+        (),
+        None,
+        derivation.remarks,
+    )
+    found = search(stages, goal, factors, progress)
+    if isinstance(found, Refusal):
+        return replace(begun, refusal=found)
+    progress("proving the solutions")
+    return _proved(replace(begun, cascade=found), posed.setups[goal.target.ask], found)
+
+
+def _proved(begun: Design, setup: Setup, found: Found) -> Design:
+    """Return the design of a cascade with its solutions.
+
+    Each solution of a stage is proved in that stage, and with the others in the whole circuit, once or more: the
+    whole is the product of its stages, so that the factor of the other combinations follows.
+    """
+    positives = {name: e for match in found.stages for name, e in match.problem.positives.items()}
+    factors = [stage_factors(match) for match in found.stages]
+    combined, more = combinations(found, factors)
+    if not combined:
+        cause = "the stages' gains together have the other sign"
+        return replace(begun, cascade=None, refusal=Refusal("gain", cause, "turn the target's sign"))
+    numbers = begun.derivation.sheet.numbers
+    scales = [
+        _quotient(
+            prove(begun.derivation, setup, begun.present, begun.goal, one.branch, numbers),
+            product_factor(factors, one.choice),
+        )
+        for one in covering(combined)
+    ]
+    solutions = tuple(
+        _solution(begun, one.branch, positives, _product(scales[0], product_factor(factors, one.choice)))
+        for one in combined
+    )
+    remarks = (*begun.remarks, *_more(begun.goal, more))
+    where = tuple(r for match in found.stages for r in _ranges(match.problem, match.branches))
+    return replace(begun, solutions=solutions, remarks=remarks, ranges=where)
+
+
+def _ranges(problem: Problem, branches: tuple[Branch, ...]) -> tuple[Range, ...]:
+    """Return where the parts with numbers may lie, if the conditions do not say it in a formula."""
+    is_long = any(equation.degree > 2 for branch in branches for equation in branch.equations)
+    of_complex = max((branch.of_complex for branch in branches), default=0)
+    return ranges(problem) if is_long and of_complex <= MOST_FOR_RANGES else ()
+
+
+def _quotient(one: Any, other: Any) -> Any:
+    return None if one is None or other is None else one / other
+
+
+def _product(one: Any, other: Any) -> Any:
+    return None if one is None or other is None else one * other
 
 
 def _expanded(derivation: Derivation, target: Target) -> Answer:
@@ -116,63 +247,23 @@ def pick_target(sheet: Sheet, ask: str | None) -> Target:
     )
 
 
-def build_problem(sheet: Sheet, answer: Answer, goal: Goal) -> Problem:
-    """Return what is to be solved: parts that are neither fixed nor chosen, and parameters behind ``solve``."""
-    present = symbols_in(answer.function)
-    set_aside = set(sheet.fixes) | set(sheet.chosen)
-    unknowns = [
-        name
-        for name, s in sheet.symbols.items()
-        if name in present and name not in set_aside and (s.role == "part" or name in sheet.solved)
-    ]
-    for name in target_symbols(goal.target):
-        if name.text in unknowns or name.text in sheet.ties:
-            raise Complaint(
-                name.place,
-                f"`{name.text}` stands in the target, so it cannot be solved for",
-                f"choose {name.text}",
-            )
-    return Problem(
-        function=answer.function,
-        target_numerator=goal.numerator,
-        target_denominator=goal.denominator,
-        gain=goal.gain,
-        unknowns=tuple(unknowns),
-        known=sheet.numbers,
-        free_unknowns=frozenset(n for n in unknowns if sheet.symbols[n].dimension in (None, "ratio")),
-        positives=_tied_parts(sheet),
-        units={name: s.dimension for name, s in sheet.symbols.items() if s.dimension not in (None, "ratio")},
-    )
+def _solution(begun: Design, branch: Branch, positives: Mapping[str, sympy.Expr], factor: Any) -> Solution:
+    """Return a branch with the values of all parts; ``factor`` is by how much the proof found it above the target."""
+    values = part_values(begun.derivation.sheet, branch, positives)
+    sign = 0 if factor is None else 1 if factor > 0 else -1
+    return Solution(branch, values, sign, _gain(begun.goal, branch, factor))
 
 
-def _tied_parts(sheet: Sheet) -> dict[str, sympy.Expr]:
-    """Return the tied resistors, capacitors and inductors as expressions in names that are not tied."""
-    expressions: dict[str, sympy.Expr] = {}
-    for name in tie_order(sheet.ties):
-        tie = sheet.ties[name]
-        if any(n.text == "s" for n in names(tie)):
-            continue
-        known = {n.text: expressions.get(n.text, symbol(n.text)) for n in names(tie) if n.text != "pi"}
-        expressions[name] = exact_number(tie, known)
-    parts = {name for name, s in sheet.symbols.items() if s.role == "part"}
-    return {name: expression for name, expression in expressions.items() if name in parts}
-
-
-def _solution(
-    derivation: Derivation, answer: Answer, goal: Goal, problem: Problem, branch: Branch
-) -> Solution:
-    sheet = derivation.sheet
-    factor = prove(derivation, answer, goal, branch, sheet.numbers)
+def part_values(sheet: Sheet, branch: Branch, positives: Mapping[str, sympy.Expr]) -> dict[str, float]:
+    """Return the values of a sheet's parts, solved, fixed and tied ones (``positives``), those that have one."""
     exact: dict[str, sympy.Expr] = dict(sheet.numbers)
     exact |= {name: sympy.Float(value, 17) for name, value in branch.values.items() if value is not None}
-    for name, expression in problem.positives.items():
+    for name, expression in positives.items():
         value = expression.subs({symbol(n): v for n, v in exact.items()})
         if value.is_number:
             exact[name] = value
     parts = [name for name, s in sheet.symbols.items() if s.role == "part" or name in branch.values]
-    values = {name: float(exact[name]) for name in sorted(parts, key=natural_key) if name in exact}
-    sign = 0 if factor is None else 1 if factor > 0 else -1
-    return Solution(branch, values, sign, _gain(goal, branch, factor))
+    return {name: float(exact[name]) for name in sorted(parts, key=natural_key) if name in exact}
 
 
 def _gain(goal: Goal, branch: Branch, factor: Any) -> float | None:
@@ -180,3 +271,9 @@ def _gain(goal: Goal, branch: Branch, factor: Any) -> float | None:
     if factor is None or goal.nominal is None or goal.nominal.free_symbols or None in branch.values.values():
         return None
     return float(factor * sympy.N(goal.nominal, 20))
+
+
+def _more(goal: Goal, more: bool) -> tuple[Remark, ...]:
+    """Return the remark that there are more solutions than are listed."""
+    text = f"only {MOST_SOLUTIONS} combinations of the stages' solutions are listed; there are more"
+    return (Remark(goal.target.place, text),) if more else ()

@@ -11,6 +11,7 @@ from symcirc.complaints import Complaint
 from symcirc.match.problem import Gain
 from symcirc.responses import (
     FAMILIES,
+    Prototype,
     Response,
     ResponseError,
     allpass,
@@ -36,7 +37,8 @@ class Goal:
 
     Coefficients are exact numbers, or expressions in parameters of the sheet (positive symbols). ``gain`` says how
     the numerator is meant: "exact" with sign and size, "magnitude" with its size alone, "free" as a shape whose
-    nominal gain is 1. ``nominal`` is the nominal gain, None for an expression.
+    nominal gain is 1. ``nominal`` is the nominal gain, None for an expression. ``order`` is the prototype's order
+    where the limits have chosen it.
     """
 
     target: Target
@@ -44,47 +46,37 @@ class Goal:
     denominator: Coefficients
     gain: Gain
     nominal: sympy.Expr | None
+    order: int | None = None
 
 
 def build_goal(sheet: Sheet, target: Target) -> Goal:
     """Return the response that a target of the sheet describes.
 
-    Raises Complaint for a family that is not there yet, and for values that make no response.
+    ``meet limits`` takes the least order with which the sheet's limits are met.
+
+    Raises Complaint for values that make no response, and for limits that no order meets.
     """
     if target.expression is not None:
         return _written(target, target.expression)
-    if target.meet_limits:
-        raise Complaint(
-            target.place, "`meet limits` cannot choose the order yet", "write the order: order 2, and so on"
-        )
+    order = None
     try:
-        response = _response(target)
+        if target.meet_limits:
+            order = _met_order(sheet, target)
+        response = _response(target, order)
     except ResponseError as error:
         raise Complaint(target.place, error.cause, error.mend) from None
     gain = target.words.get("gain")
     factor = sympy.Integer(1) if gain is None else _gain(gain)
     numerator = tuple(factor * c for c in response.numerator)
-    return Goal(target, numerator, response.denominator, "free" if gain is None else "magnitude", factor)
+    how: Gain = "free" if gain is None else "magnitude"
+    return Goal(target, numerator, response.denominator, how, factor, order)
 
 
-def _response(target: Target) -> Response:
+def _response(target: Target, met_order: int | None) -> Response:
     words = target.words
     if target.family is None:
         return second_order(str(target.kind), _frequency("f0", words["f0"]), _positive("q", words["q"]))
-    family = FAMILIES.get(target.family)
-    if family is None:
-        ready = ", ".join(FAMILIES)
-        raise Complaint(target.place, f"the family `{target.family}` is not built yet", f"use one of {ready}")
-    if target.kind not in family.kinds:
-        raise Complaint(
-            target.place,
-            f"a {target.family} response has no {target.kind} form",
-            f"it has {', '.join(family.kinds)}",
-        )
-    order = int(exact_number(words["order"].expression))
-    prototype = family.build(order, *(_number(word, words[word]) for word in family.needs))
-    if "edge loss" in words:
-        prototype = edge_at(prototype, _number("edge loss", words["edge loss"]))
+    prototype = _prototype(target, met_order or int(exact_number(words["order"].expression)))
     if target.kind in ("bandpass", "bandstop"):
         transform = bandpass if target.kind == "bandpass" else bandstop
         return transform(prototype, *_band(words))
@@ -94,6 +86,48 @@ def _response(target: Target) -> Response:
         "allpass": allpass,
     }
     return single[str(target.kind)](prototype, _frequency("edge", words["edge"]))
+
+
+def _prototype(target: Target, order: int) -> Prototype:
+    """Return the prototype of the target's family, its edge where the words put it."""
+    words = target.words
+    family = FAMILIES[str(target.family)]
+    prototype = family.build(order, *(_number(word, words[word]) for word in family.needs))
+    if "edge loss" in words:
+        prototype = edge_at(prototype, _number("edge loss", words["edge loss"]))
+    return prototype
+
+
+def _met_order(sheet: Sheet, target: Target) -> int:
+    """Return the least order with which the target meets its limits; its frequencies must have numbers."""
+    from symcirc.masks.mask import read_mask
+    from symcirc.masks.meeting import least_order
+    from symcirc.masks.placing import Spot
+
+    if target.kind == "allpass":
+        raise Complaint(
+            target.place,
+            "an all-pass has no loss, so limits of loss choose no order",
+            "write the order: order 2",
+        )
+    if target.kind in ("bandpass", "bandstop"):
+        centre, size = (_valued(sheet, target, x) for x in _band(target.words))
+        spot = Spot(str(target.kind), size, centre)
+    else:
+        spot = Spot(str(target.kind), _valued(sheet, target, _frequency("edge", target.words["edge"])), None)
+    return least_order(read_mask(sheet, target.ask), spot, lambda order: _prototype(target, order))
+
+
+def _valued(sheet: Sheet, target: Target, number: sympy.Expr) -> float:
+    value = number.subs({symbol(name): known for name, known in sheet.numbers.items()})
+    if not value.is_number:
+        names_left = ", ".join(sorted(map(str, value.free_symbols)))
+        raise Complaint(
+            target.place,
+            f"`meet limits` needs numbers, and {names_left} has none",
+            f"fix {names_left} = value",
+        )
+    return float(value)
 
 
 def _band(words: Mapping[str, Value]) -> tuple[sympy.Expr, sympy.Expr]:

@@ -3,17 +3,18 @@
 from __future__ import annotations
 
 import random
-from collections.abc import Mapping
+from collections.abc import Mapping, Set
 from typing import Any
 
 import mpmath
 import sympy
 
+from symcirc.circuit.model import Setup
 from symcirc.complaints import InternalFault
-from symcirc.derivation import Answer, Derivation
+from symcirc.derivation import Derivation
 from symcirc.goal import Goal
 from symcirc.match.problem import Branch, Root
-from symcirc.transfer.function import symbols_in
+from symcirc.sheet.expression import names
 from symcirc.witness.agree import precise_ratio
 
 #: The largest relative departure from the target that is taken for rounding of a solution's values.
@@ -27,30 +28,36 @@ DECADES = {"ohm": (3, 5), "F": (-9, -7), "H": (-3, -1), "S": (-5, -3), "Hz": (2,
 
 
 def prove(
-    derivation: Derivation, answer: Answer, goal: Goal, branch: Branch, known: Mapping[str, sympy.Expr]
+    derivation: Derivation,
+    setup: Setup,
+    present: Set[str],
+    goal: Goal,
+    branch: Branch,
+    known: Mapping[str, sympy.Expr],
 ) -> Any:
     """Compare the circuit with the target at three frequencies, each part at its value.
 
-    ``known`` are the numbers of the sheet. Where symbols are left, they get random values at which the branch is
-    real and positive. Returns by what factor the circuit's ratio is larger than the target (1 or -1 but for a free
-    gain), or None where no such values are found. Raises InternalFault where the circuit does not give the target.
+    ``present`` are the names in the ratio that ``setup`` asks, ``known`` the numbers of the sheet. Where symbols are
+    left, they get random values at which the branch is real and positive. Returns by what factor the circuit's ratio
+    is larger than the target (1 or -1 but for a free gain), or None where no such values are found. Raises
+    InternalFault where the circuit does not give the target.
     """
     targets = (*goal.numerator, *goal.denominator)
-    symbols = symbols_in(answer.function) | {str(x) for c in targets for x in c.free_symbols}
+    symbols = present | {str(x) for c in targets for x in c.free_symbols}
     solved = {equation.part for equation in branch.equations}
     missing = sorted(symbols - set(known) - solved - {"pi"})
     with mpmath.workdps(DIGITS):
         numbers = {name: _number(number, {}) for name, number in known.items()}
         if missing:
-            return _prove_somewhere(derivation, answer, goal, branch, numbers, missing)
+            return _prove_somewhere(derivation, setup, goal, branch, numbers, missing)
         values = {name: mpmath.mpf(value) for name, value in branch.values.items() if value is not None}
         _agree(_follow(branch, numbers), values, goal)
-        return _compare(derivation, answer, goal, {**numbers, **values})
+        return _compare(derivation, setup, goal, {**numbers, **values})
 
 
 def _prove_somewhere(
     derivation: Derivation,
-    answer: Answer,
+    setup: Setup,
     goal: Goal,
     branch: Branch,
     numbers: dict[str, Any],
@@ -61,7 +68,7 @@ def _prove_somewhere(
         chosen = {name: _random_value(derivation, name, generator) for name in missing}
         followed = _follow(branch, {**numbers, **chosen})
         if followed is not None:
-            return _compare(derivation, answer, goal, followed)
+            return _compare(derivation, setup, goal, followed)
     return None
 
 
@@ -116,16 +123,20 @@ def _root(root: Root, values: Mapping[str, Any]) -> Any:
     return positive[max(root.index, 1) - 1] if len(positive) >= max(root.index, 1) else None
 
 
-def _compare(derivation: Derivation, answer: Answer, goal: Goal, values: dict[str, Any]) -> Any:
+def _compare(derivation: Derivation, setup: Setup, goal: Goal, values: dict[str, Any]) -> Any:
     numerator = [_number(c, values) for c in goal.numerator]
     denominator = [_number(c, values) for c in goal.denominator]
     order = len(denominator) - 1
     centre = abs(denominator[0]) ** (mpmath.mpf(1) / order) if order and denominator[0] else mpmath.mpf(1)
+    held = {name.text for tie in derivation.ties.values() for name in names(tie)} - {"s", "pi"}
+    held |= {part.name for part in derivation.circuit.parts}
+    held |= {n for device in derivation.circuit.devices for n in device.parameters.values()}
+    known = dict.fromkeys(held, mpmath.mpf(1)) | values  # what moves nothing that is asked may have any value
     factors = []
     for step in ("0.37", "0.93", "2.1"):
         s = mpmath.mpc("0.03", step) * centre
         target = _polynomial(numerator, s) / _polynomial(denominator, s)
-        factors.append(precise_ratio(derivation.circuit, answer.setup, derivation.ties, values, s) / target)
+        factors.append(precise_ratio(derivation.circuit, setup, derivation.ties, known, s) / target)
     expected = {"exact": mpmath.mpf(1), "magnitude": mpmath.sign(mpmath.re(factors[0])), "free": factors[0]}[
         goal.gain
     ]

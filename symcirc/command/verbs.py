@@ -5,15 +5,19 @@ from __future__ import annotations
 import sys
 from argparse import Namespace
 from collections.abc import Callable, Iterable
+from dataclasses import replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from symcirc.command.main import STOPPED
 from symcirc.command.progress import ProgressLine
 from symcirc.complaints import Complaint, Place, Remark, Source, nearest
 from symcirc.sheet import Sheet, decode, read_sheet
 
 if TYPE_CHECKING:
     from symcirc.derivation import Derivation, Posed
+    from symcirc.design import Design
+    from symcirc.values.find import Found
 
 #: Up to so many products an answer is written out for people, unless they say otherwise.
 MOST_FOR_PEOPLE = 400
@@ -119,9 +123,12 @@ def match(words: Namespace, progress: ProgressLine) -> int:
     """Print the design equations of a sheet's target; status 1 where it cannot be met."""
     from symcirc.design import design
 
+    path = _workbook_path(words)
     sheet = read_sheet(read_file(words.sheet))
     found = design(sheet, words.ask, progress)
     status = 0 if found.solutions else 1
+    if path is not None:
+        _write_workbook(path, found, words, progress)
     if words.json:
         from symcirc.report.match_json import match_json
 
@@ -131,6 +138,95 @@ def match(words: Namespace, progress: ProgressLine) -> int:
 
     _print_text(match_latex(found) if words.latex else match_text(found), found.remarks, progress)
     return status
+
+
+def _workbook_path(words: Namespace) -> Path | None:
+    """Return where a match's workbook goes; raises Complaint for a name of another kind and a file that is there."""
+    from symcirc.command.files import refuse_existing, refuse_file
+
+    if not words.workbook:
+        return None
+    path = Path(words.workbook)
+    if path.suffix.lower() != ".xlsx":
+        raise refuse_file(path, "is of no kind that a workbook is written in", "let its name end in .xlsx")
+    if not words.replace:
+        refuse_existing(path)
+    return path
+
+
+def _write_workbook(path: Path, found: Design, words: Namespace, progress: ProgressLine) -> None:
+    """Write a match's workbook, where there is a solution."""
+    from symcirc.command.files import write_whole
+    from symcirc.workbook.build import MOST_SOLUTIONS, worksheets
+    from symcirc.workbook.write import workbook_bytes
+
+    if not found.solutions:
+        progress.clear()
+        print(f"there is no solution, so {path} was not written", file=sys.stderr)
+        return
+    write_whole(path, workbook_bytes(worksheets(found, progress)), replace=words.replace)
+    if len(found.solutions) > MOST_SOLUTIONS:
+        progress.clear()
+        of = f"{MOST_SOLUTIONS} of {len(found.solutions)}"
+        print(f"{path} holds the first {of} solutions", file=sys.stderr)
+
+
+def order(words: Namespace, progress: ProgressLine) -> int:
+    """Print the least order of every family that meets a sheet's limits."""
+    from symcirc.masks.mask import read_mask
+    from symcirc.masks.order import pick_ask, select
+
+    sheet = read_sheet(read_file(words.sheet))
+    progress("comparing the families")
+    selection = select(read_mask(sheet, pick_ask(sheet, words.ask)))
+    if words.json:
+        from symcirc.report.order_json import order_json
+
+        _print_json(order_json(sheet.title, selection, sheet.remarks), progress)
+        return 0
+    from symcirc.report.order_text import order_text
+
+    _print_text(order_text(sheet.title, selection), sheet.remarks, progress)
+    return 0
+
+
+def values(words: Namespace, progress: ProgressLine) -> int:
+    """Print ranked sets of preferred values, and write the sheet with one of them; status 130 after Ctrl-C."""
+    from symcirc.command.files import refuse_existing
+    from symcirc.report.values_json import values_csv, values_json
+    from symcirc.report.values_text import values_text
+    from symcirc.values.find import Options, find_values
+
+    sheet = read_sheet(read_file(words.sheet))
+    if words.write and not words.replace:
+        refuse_existing(Path(words.write))
+    options = Options(max(words.best, words.take), words.window, words.together)
+    found = find_values(sheet, words.ask, options, progress)
+    if words.write and found.complete and found.sets:
+        _write_values(words, found)
+    shown = replace(found, sets=found.sets[: words.best])
+    if words.json:
+        _print_json(values_json(shown), progress)
+    elif words.csv:
+        _print_text(values_csv(shown).splitlines(), found.plan.design.remarks, progress)
+    else:
+        _print_text(values_text(shown), found.plan.design.remarks, progress)
+    if not found.complete:
+        unwritten = f", {words.write} was not written" if words.write else ""
+        print(f"stopped; the sets are the best so far{unwritten}", file=sys.stderr)
+        return STOPPED
+    return 0 if found.sets else 1
+
+
+def _write_values(words: Namespace, found: Found) -> None:
+    from symcirc.command.files import write_whole
+    from symcirc.values.writing import sheet_with
+
+    if words.take > len(found.sets):
+        place, count = found.plan.design.goal.target.place, len(found.sets)
+        raise Complaint(place, f"set {words.take} is asked for, and there are {count}", "take a lower number")
+    text = sheet_with(found.plan.sheet, found.sets[words.take - 1])
+    write_whole(Path(words.write), text.encode(), replace=words.replace)
 
 
 def check(words: Namespace, progress: ProgressLine) -> int:
@@ -150,6 +246,89 @@ def check(words: Namespace, progress: ProgressLine) -> int:
     lines = check_latex(checked) if words.latex else check_text(checked)
     _print_text(lines, posed.sheet.remarks, progress)
     return checked.exit_status
+
+
+def draw(words: Namespace, progress: ProgressLine) -> int:
+    """Write a drawing of a sheet's circuit."""
+    from symcirc.command.files import refuse_existing, refuse_file, write_whole
+    from symcirc.drawing import draw as draw_sheet
+    from symcirc.drawing.picture import picture
+
+    path = Path(words.output)
+    kind = path.suffix[1:].lower()
+    if kind not in ("svg", "png", "pdf"):
+        raise refuse_file(path, "is of no kind that can be drawn", "let its name end in .svg, .png or .pdf")
+    if not words.replace:
+        refuse_existing(path)
+    sheet = read_sheet(read_file(words.sheet))
+    progress("drawing")
+    drawn = draw_sheet(sheet, words.symbols)
+    data = drawn.svg.encode() if kind == "svg" else picture(drawn.drawing, kind)
+    write_whole(path, data, replace=words.replace)
+    progress.clear()
+    for remark in sheet.remarks:
+        print(remark, file=sys.stderr)
+    return 0
+
+
+def plot(words: Namespace, progress: ProgressLine) -> int:
+    """Write a picture of a response, or its curves as numbers; status 1 where the target cannot be met."""
+    from symcirc.command.files import refuse_existing, write_whole
+    from symcirc.plots.curves import curves_of
+    from symcirc.plots.picture import picture
+    from symcirc.plots.table import curves_csv, curves_json
+
+    path = _plot_path(words)
+    if path and not words.replace:
+        refuse_existing(path)
+    asked = _plot_what(words)
+    sheet = read_sheet(read_file(words.sheet))
+    curves = curves_of(sheet, words.ask, progress)
+    what = curves.shown(asked)
+    status = 0 if curves.is_met else 1
+    if words.json:
+        _print_json(curves_json(curves, what), progress)
+        return status
+    if path is None:
+        _print_text(curves_csv(curves, what).splitlines(), curves.remarks, progress)
+        return status
+    progress("plotting")
+    data = curves_csv(curves, what).encode() if words.csv else picture(curves, what, path.suffix[1:].lower())
+    write_whole(path, data, replace=words.replace)
+    progress.clear()
+    for remark in curves.remarks:
+        print(remark, file=sys.stderr)
+    return status
+
+
+def _plot_path(words: Namespace) -> Path | None:
+    """Return where to write, None for standard output; raises Complaint for a name of another kind."""
+    from symcirc.command.files import refuse_file
+
+    if words.output is None:
+        return None
+    path = Path(words.output)
+    kinds = (".csv",) if words.csv else (".svg", ".png", ".pdf")
+    if path.suffix.lower() not in kinds:
+        mend = (
+            "let its name end in .csv"
+            if words.csv
+            else "let its name end in .svg, .png or .pdf, or add --csv"
+        )
+        raise refuse_file(path, "is of no kind that can be plotted", mend)
+    return path
+
+
+def _plot_what(words: Namespace) -> tuple[str, ...]:
+    """Return what is to be shown, empty where nothing was said; raises Complaint for a word of no meaning."""
+    from symcirc.plots.curves import WHAT
+
+    asked = [word.strip() for given in words.what or () for word in given.split(",")]
+    for word in asked:
+        if word not in WHAT:
+            mend = nearest(word, WHAT) or f"use {', '.join(WHAT)}"
+            raise Complaint(Place(1, 1, 2, Source("--what", word)), f"`{word}` cannot be plotted", mend)
+    return tuple(asked)
 
 
 def _wanted(sheet: Sheet, ask: str | None) -> set[str] | None:
@@ -185,5 +364,9 @@ def _print_text(lines: Iterable[str], remarks: Iterable[Remark], progress: Progr
 VERBS: dict[str, Callable[[Namespace, ProgressLine], int]] = {
     "derive": derive,
     "match": match,
+    "order": order,
     "check": check,
+    "values": values,
+    "draw": draw,
+    "plot": plot,
 }

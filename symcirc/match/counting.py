@@ -17,6 +17,7 @@ from sympy.polys.rings import PolyElement
 
 from symcirc.match.decimals import fraction_near
 from symcirc.match.names import natural
+from symcirc.match.quantities import Quantities
 from symcirc.match.system import Coefficient, System
 
 PRIME = 2**61 - 1
@@ -45,7 +46,7 @@ class Count:
 def count(system: System) -> Count:
     """Return what the unknowns of a system can set, the denominator's coefficients first."""
     quantities = system.quantities
-    point = _random_point(system)
+    point = modular_point(quantities)
     columns = system.coefficients
     rows = []
     for group in system.groups:
@@ -100,11 +101,11 @@ def _reference(group: Sequence[Coefficient]) -> Coefficient:
     return min(present, key=lambda c: (c.where != "denominator", len(c.stage), c.power))
 
 
-def _random_point(system: System) -> list[int]:
+def modular_point(quantities: Quantities) -> list[int]:
     """Return a value modulo the prime for each generator, the known ones where they are short fractions."""
     generator = random.Random(1934)
-    point = [generator.randrange(1, PRIME) for _ in range(system.quantities.ring.ngens)]
-    for position, number in system.quantities.numbers.items():
+    point = [generator.randrange(1, PRIME) for _ in range(quantities.ring.ngens)]
+    for position, number in quantities.numbers.items():
         fraction = fraction_near(number)
         if fraction is not None:
             point[position] = fraction.numerator * pow(fraction.denominator, -1, PRIME) % PRIME

@@ -81,12 +81,15 @@ class Condition:
 class Branch:
     """One real positive solution: equations in the order of computing, and where it is real and positive.
 
-    ``values`` are in SI base units; None for a part that depends on a quantity without a number.
+    ``values`` are in SI base units; None for a part that depends on a quantity without a number. Where a solution was
+    found in numbers its equations give these numbers, and ``of_complex`` is how many complex solutions the equations
+    have, each counted as often as it is multiple; it is 0 where the equations are formulas.
     """
 
     equations: tuple[Equation, ...]
     conditions: tuple[Condition, ...]
     values: Mapping[str, float | None]
+    of_complex: int = 0
 
 
 @dataclass(frozen=True)

@@ -63,15 +63,39 @@ def too_few(coefficients: Iterable[Coefficient], system: System, found: Count, p
     )
 
 
-def contradiction(problem: Problem) -> Refusal:
-    """Return the refusal of a problem without a positive solution, whatever is chosen."""
+def contradiction(problem: Problem, quantities: Quantities) -> Refusal:
+    """Return the refusal of a problem without a positive solution, whatever is chosen of what is left a symbol."""
     symbols = {str(s) for s in problem.function.ring.symbols} - {*problem.unknowns, "pi"}
-    chosen = listed(sorted(symbols, key=natural), last="or")
+    left = symbols & {quantities.name(k) for k in range(quantities.ring.ngens)}
+    chosen = listed(sorted(left, key=natural), last="or")
     whatever = f", whatever the values of {chosen}" if chosen else ""
     return Refusal(
         "negative",
         f"no positive {listed([*problem.unknowns, *problem.positives])} give this target{whatever}",
         "ask for another target, or leave other parts to be solved for",
+    )
+
+
+def none_positive(problem: Problem, neighbour: tuple[str, sympy.Expr] | None) -> Refusal:
+    """Return the refusal of numbers for which all solutions were found and none is positive.
+
+    ``neighbour`` is a part with another number for which there is a solution.
+    """
+    mend = "change the ratios of the chosen values, or leave other parts to be solved for"
+    if neighbour is not None:
+        name, number = neighbour
+        mend = f"{name} = {engineering(float(number), problem.units[name])} would do, the rest as given"
+    parts = listed([*problem.unknowns, *problem.positives])
+    return Refusal("negative", f"no positive {parts} give this target with the given values", mend)
+
+
+def no_formula(symbols: Iterable[str]) -> Refusal:
+    """Return the refusal of a problem that has solutions in numbers, with symbols left in it."""
+    names = listed(sorted(symbols, key=natural))
+    return Refusal(
+        "given up",
+        f"the design equations of this stage have no short formulas in {names}",
+        f"fix a number for {names}: then the solutions are found in numbers",
     )
 
 
@@ -106,7 +130,7 @@ def no_branch(
         if not (in_parts and failing):
             return _violated(condition(claim, quantities), candidate, problem, quantities)
     if not failing:
-        return contradiction(problem)
+        return contradiction(problem, quantities)
     form = failing[0].forms[len(failing[0].choices) - 1]
     name, value = quantities.name(form.unknown), failing[0].values[form.unknown]
     if reals.isnan(value):

@@ -17,8 +17,8 @@ from mpmath import MPContext
 from symcirc.match.decimals import reals
 
 #: The arithmetic of Sturm's sequence.
-_wide: Any = MPContext()
-_wide.dps = 250
+wide: Any = MPContext()
+wide.dps = 250
 #: What counts as zero beside 1; for complex polynomials at a random point less is asked.
 _ZERO, _ALIKE = reals.mpf(10) ** -50, reals.mpf(10) ** -40
 
@@ -43,14 +43,40 @@ def positive_roots(coefficients: Sequence[Any]) -> list[Any]:
         kept.pop(0)
     if len(kept) < 2:
         return []
-    size = reals.root(abs(kept[0] / kept[-1]), len(kept) - 1)  # the geometric mean of the sizes of the roots
-    scaled = _normal([_wide.mpf(c * size**k) for k, c in enumerate(kept)])
-    sequence = sturm_sequence(scaled)
-    if len(sequence[-1]) > 1:  # the factor of the multiple roots
-        scaled = _normal(_long_division(scaled, sequence[-1])[0])
-        sequence = sturm_sequence(scaled)
-    decimals = [reals.mpf(c) for c in scaled]
+    size, scaled = _scaled(kept)
+    simple, sequence = _simple(scaled)
+    decimals = [reals.mpf(c) for c in simple]
     return [size * _refined(decimals, reals.mpf(low), reals.mpf(high)) for low, high in _isolated(sequence)]
+
+
+def simple_part(coefficients: Sequence[Any]) -> list[Any]:
+    """Return a polynomial with the same roots, real or complex, each once, to 250 digits.
+
+    Args:
+        coefficients: ascending powers; neither the first nor the last is zero.
+
+    >>> found = simple_part([wide.mpf(c) for c in (-2, 3, 0, -1)])  # -(x - 1)^2 (x + 2)
+    >>> [round(c / found[-1]) for c in found]
+    [-2, 1, 1]
+    """
+    size, scaled = _scaled(coefficients)
+    simple, _ = _simple(scaled)
+    return [c / wide.mpf(size) ** k for k, c in enumerate(simple)]
+
+
+def _scaled(coefficients: Sequence[Any]) -> tuple[Any, Polynomial]:
+    """Return the size of the roots (the geometric mean), and the polynomial of the roots over it."""
+    size = reals.root(abs(reals.mpf(coefficients[0]) / reals.mpf(coefficients[-1])), len(coefficients) - 1)
+    return size, _normal([wide.mpf(c) * wide.mpf(size) ** k for k, c in enumerate(coefficients)])
+
+
+def _simple(polynomial: Polynomial) -> tuple[Polynomial, list[Polynomial]]:
+    """Return a polynomial without multiple roots, and its sequence."""
+    sequence = sturm_sequence(polynomial)
+    if len(sequence[-1]) == 1:
+        return polynomial, sequence
+    simple = _normal(_long_division(polynomial, sequence[-1])[0])
+    return simple, sturm_sequence(simple)
 
 
 def real_roots(coefficients: Sequence[Any]) -> list[Any]:
@@ -88,7 +114,7 @@ def _normal(polynomial: Polynomial) -> Polynomial:
 
 
 def _value(polynomial: Polynomial, x: Any) -> Any:
-    total = _wide.mpf(0)
+    total = wide.mpf(0)
     for c in reversed(polynomial):
         total = total * x + c
     return total
@@ -103,7 +129,7 @@ def _changes(sequence: list[Polynomial], x: Any) -> int:
 def _isolated(sequence: list[Polynomial]) -> list[tuple[Any, Any]]:
     """Return, for each positive root, an interval open below that holds it alone."""
     bound = 1 + max(map(abs, sequence[0][:-1])) / abs(sequence[0][-1])  # Cauchy's bound
-    zero = _wide.mpf(0)
+    zero = wide.mpf(0)
     waiting = [(zero, _changes(sequence, zero), bound, _changes(sequence, bound))]
     intervals = []
     while waiting:

@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Iterable, Mapping, Sequence
+from dataclasses import dataclass, replace
+from typing import Any
 
+import sympy
 from sympy.polys.rings import PolyElement
 
 from symcirc.complaints import InternalFault
@@ -14,19 +16,48 @@ from symcirc.match.cases import missing_cases
 from symcirc.match.chains import Chain, chains, random_point, solutions_at
 from symcirc.match.claims import Claim
 from symcirc.match.counting import count
-from symcirc.match.decimals import reals
-from symcirc.match.problem import Branch, Problem, Refusal, Refused, Solutions
+from symcirc.match.decimals import exact, reals
+from symcirc.match.numeric import numeric_solutions
+from symcirc.match.problem import Branch, Equation, Problem, Refusal, Refused, Solutions
 from symcirc.match.quantities import Quantities, is_met
-from symcirc.match.refusals import contradiction, left_open, no_branch, too_few, too_many, undetermined
+from symcirc.match.quotient import NotFound
+from symcirc.match.refusals import (
+    contradiction,
+    left_open,
+    no_branch,
+    no_formula,
+    none_positive,
+    too_few,
+    too_many,
+    undetermined,
+)
 from symcirc.match.screening import partner_of, screened
 from symcirc.match.shapes import check_order, check_shapes
 from symcirc.match.system import Coefficient, System, build_system
 from symcirc.match.triangular import triangular
 from symcirc.match.work import DEFAULT_BOUND, Work
 from symcirc.match.writing import Writer
+from symcirc.transfer.function import symbols_in
 
 #: Which of two refusals is told where a target may be met with either sign: the later one.
 _TELLING = ("sign", "gain", "shape", "order", "target", "few", "negative", "many", "given up")
+
+#: From this number of unknowns on the solutions are first found in numbers, where all are known; where there are more
+#: complex ones than the second number, formulas would be too long to be of use, and are not looked for.
+FEWEST_FOR_NUMBERS, MOST_FOR_FORMULAS = 4, 6
+#: Products of terms after which the search in numbers ends, and that for other numbers nearby; a few seconds.
+NUMERIC_BOUND, NEIGHBOUR_BOUND = 100_000, 50_000
+#: By what a part's number is multiplied to find others nearby that would do.
+_FACTORS = tuple(sympy.Rational(*f) for f in ((2, 1), (1, 2), (5, 1), (1, 5), (10, 1), (1, 10)))
+#: Units of what is a part.
+PARTS = ("ohm", "F", "H")
+#: Sizes of parts in SI base units.
+_USUAL = {
+    "ohm": sympy.Integer(10) ** 4,
+    "F": sympy.Rational(1, 10**8),
+    "H": sympy.Rational(1, 10),
+    "Hz": sympy.Integer(1000),
+}
 
 
 def solve(
@@ -63,6 +94,64 @@ def solve(
 
 
 def _solved(problem: Problem, sign: int, work: Work) -> list[Branch]:
+    """Return the branches by formulas; in numbers where these would be long or there are none.
+
+    Raises Refused where there are no branches.
+    """
+    symbols = _symbols(problem)
+    numeric: _Numeric | None = None
+    if not symbols and len(problem.unknowns) >= FEWEST_FOR_NUMBERS:
+        numeric = _in_numbers(problem, sign, work.again(NUMERIC_BOUND))
+        if numeric is not None and not numeric.has_formulas:
+            return _told(numeric, problem, sign, None, work.again(NEIGHBOUR_BOUND))
+    try:
+        return _by_formulas(problem, sign, work)
+    except Refused as refused:
+        if refused.refusal.kind not in ("negative", "given up"):
+            raise
+        refusal = refused.refusal
+    if numeric is None:
+        sampled = replace(problem, known={**problem.known, **_sample(symbols, problem.units)})
+        try:
+            numeric = _in_numbers(sampled, sign, work.again(NUMERIC_BOUND))
+        except Refused:  # of the sample's numbers, which are not the user's
+            raise Refused(refusal) from None
+    if numeric is None or (symbols and not numeric.branches):
+        raise Refused(refusal)
+    if symbols:
+        raise Refused(no_formula(symbols))
+    return _told(numeric, problem, sign, refusal, work.again(NEIGHBOUR_BOUND))
+
+
+def _told(
+    numeric: _Numeric, problem: Problem, sign: int, refusal: Refusal | None, work: Work
+) -> list[Branch]:
+    """Return the branches found in numbers; where there are none, raise Refused, with what the formulas say of it."""
+    if numeric.branches:
+        return list(numeric.branches)
+    if numeric.refusal is not None:
+        raise Refused(numeric.refusal)
+    if refusal is None or refusal.kind != "negative":
+        refusal = none_positive(problem, _neighbour(problem, sign, work))
+    raise Refused(refusal)
+
+
+def _neighbour(problem: Problem, sign: int, work: Work) -> tuple[str, sympy.Expr] | None:
+    """Return a part and another number for it with which there is a solution, the rest as given, if one is near."""
+    names = [name for name in problem.known if problem.units.get(name) in PARTS]
+    for factor in _FACTORS:
+        for name in names:
+            number = problem.known[name] * factor
+            try:
+                found = _in_numbers(replace(problem, known={**problem.known, name: number}), sign, work)
+            except Refused:
+                return None
+            if found is not None and found.branches:
+                return name, number
+    return None
+
+
+def _by_formulas(problem: Problem, sign: int, work: Work) -> list[Branch]:
     try:
         return _branches(build_system(problem, sign), problem, work)
     except Degenerate as degenerate:
@@ -75,8 +164,61 @@ def _solved(problem: Problem, sign: int, work: Work) -> list[Branch]:
         raise Refused(refusal or refused.refusal) from None
 
 
+def _symbols(problem: Problem) -> set[str]:
+    """Return the symbols that are no unknowns and have no number."""
+    targets = (*problem.target_numerator, *problem.target_denominator, *problem.positives.values())
+    held = {str(s) for t in targets for s in t.free_symbols} | symbols_in(problem.function)
+    return held - {*problem.unknowns, *problem.positives, *problem.known, "pi"}
+
+
+def _sample(names: Iterable[str], units: Mapping[str, str]) -> dict[str, sympy.Expr]:
+    """Return numbers of usual sizes for symbols, no two alike: whether a claim about all values is true for these."""
+    return {
+        name: _USUAL.get(units.get(name, ""), sympy.S.One) * sympy.Rational(97 + k, 89)
+        for k, name in enumerate(sorted(names))
+    }
+
+
 @dataclass(frozen=True)
-class _Solvable:
+class _Numeric:
+    """Branches found in numbers; ``refusal`` says which further equation the solutions miss, if they do.
+
+    ``has_formulas`` tells whether formulas are worth a trial: they are long where there are many complex solutions,
+    and lose digits where some of these meet.
+    """
+
+    branches: tuple[Branch, ...]
+    has_formulas: bool
+    refusal: Refusal | None
+
+
+def _in_numbers(problem: Problem, sign: int, work: Work) -> _Numeric | None:
+    """Return the branches of a problem without symbols, None where they cannot be found; raises Refused."""
+    system = build_system(problem, sign)
+    solvable = _counted(system, problem)
+    quantities = system.quantities
+    try:
+        found = numeric_solutions(solvable.equations, quantities, problem.known, work)
+    except (NotFound, Refused):  # the latter: too much work
+        return None
+    tied = [Claim((quotient.above, quotient.below)) for quotient in system.positives.values()]
+    positive = [v for v in found.values if not any(claim.is_missed(v) for claim in tied)]
+    met = [v for v in positive if all(is_met(equation, v) for equation in solvable.consequences)]
+    refusal = solvable.refusal if positive and not met else None
+    has_formulas = found.of_complex <= MOST_FOR_FORMULAS and found.distinct == found.of_complex
+    return _Numeric(
+        tuple(_numeric_branch(v, found.of_complex, quantities) for v in met), has_formulas, refusal
+    )
+
+
+def _numeric_branch(values: Sequence[Any], of_complex: int, quantities: Quantities) -> Branch:
+    named = {quantities.name(k): values[k] for k in quantities.unknowns}
+    equations = tuple(Equation(name, exact(value), of_complex) for name, value in named.items())
+    return Branch(equations, (), {name: float(value) for name, value in named.items()}, of_complex)
+
+
+@dataclass(frozen=True)
+class Solvable:
     """A system with the equations to solve and those that have to follow."""
 
     system: System
@@ -86,14 +228,24 @@ class _Solvable:
     fixed: tuple[PolyElement, ...]  # relations that the numbers of chosen quantities meet
 
 
-def _branches(system: System, problem: Problem, work: Work) -> list[Branch]:
+def solved_chains(system: System, problem: Problem, work: Work) -> tuple[Solvable, list[Chain]]:
+    """Return a system's equations counted, and the chains of formulas that solve them.
+
+    Raises Refused where there are too many unknowns, an equation cannot be met, or the work grows too large.
+    """
     solvable = _counted(system, problem)
+    return solvable, _chains(solvable, work)
+
+
+def _branches(system: System, problem: Problem, work: Work) -> list[Branch]:
+    solvable, found = solved_chains(system, problem, work)
     quantities = system.quantities
-    found = _chains(solvable, work)
     if not found:
         if quantities.numbers:
-            raise Degenerate(contradiction(problem))  # in symbols; for these numbers it may have a solution
-        raise Refused(contradiction(problem))
+            raise Degenerate(
+                contradiction(problem, quantities)
+            )  # in symbols; for these numbers it may have a solution
+        raise Refused(contradiction(problem, quantities))
     branches: list[Branch] = []
     failed: list[tuple[Candidate, Sequence[Claim] | None]] = []
     missed = False
@@ -115,10 +267,10 @@ def _branches(system: System, problem: Problem, work: Work) -> list[Branch]:
         return branches
     if missed:
         raise Refused(solvable.refusal)
-    raise Refused(no_branch(failed, problem, quantities) if failed else contradiction(problem))
+    raise Refused(no_branch(failed, problem, quantities) if failed else contradiction(problem, quantities))
 
 
-def _counted(system: System, problem: Problem) -> _Solvable:
+def _counted(system: System, problem: Problem) -> Solvable:
     """Return the equations of a system; raise Refused where there are too many unknowns or one cannot be met."""
     check_shapes(system)
     found = count(system)
@@ -133,7 +285,7 @@ def _counted(system: System, problem: Problem) -> _Solvable:
 
     independent = [c for c in left if c in found.independent]
     dependent = [c for c in left if c not in found.independent]
-    return _Solvable(
+    return Solvable(
         system,
         tuple(relation(c) for c in independent),
         tuple(relation(c) for c in dependent),
@@ -142,7 +294,7 @@ def _counted(system: System, problem: Problem) -> _Solvable:
     )
 
 
-def _chains(solvable: _Solvable, work: Work) -> list[Chain]:
+def _chains(solvable: Solvable, work: Work) -> list[Chain]:
     system = solvable.system
     quantities = system.quantities
     state = triangular(solvable.equations, quantities.unknowns, quantities, work)
@@ -185,7 +337,7 @@ def _follow(
     return all(is_met(equation, point) for equation in consequences for point in points)
 
 
-def _check(candidate: Candidate, region: Region, solvable: _Solvable) -> None:
+def _check(candidate: Candidate, region: Region, solvable: Solvable) -> None:
     """Put the values, where all are known, into the original equations and the conditions."""
     if None in candidate.values:
         return

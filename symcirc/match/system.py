@@ -147,7 +147,7 @@ def _ratio(number: sympy.Expr, other: sympy.Expr) -> sympy.Expr:
     ratio = number / other
     if not ratio.is_number or ratio.is_Rational:
         return sympy.cancel(ratio) if ratio.free_symbols else ratio
-    found = fraction_near(decimal(number) / decimal(other))
+    found = fraction_near(decimal(ratio))
     return ratio if found is None else sympy.Rational(found.numerator, found.denominator)
 
 

@@ -20,8 +20,13 @@ class Work:
     """Counts products of terms; called between the steps of the algebra."""
 
     def __init__(self, bound: int = DEFAULT_BOUND, should_stop: Callable[[], bool] = lambda: False) -> None:
+        self._bound = bound
         self._left = bound
         self._should_stop = should_stop
+
+    def again(self, most: int) -> Work:
+        """Return a count from the start, with the same bound but at most another."""
+        return Work(min(self._bound, most), self._should_stop)
 
     def spend(self, products: int) -> None:
         """Count work that is about to be done.
@@ -31,6 +36,10 @@ class Work:
         """
         if products > STEP_BOUND:
             raise StepTooLarge
+        self.count(products)
+
+    def count(self, products: int) -> None:
+        """Count work of any size; raises Refused as :meth:`spend` does."""
         self._left -= products
         if self._left < 0 or self._should_stop():
             raise Refused(given_up())

@@ -24,12 +24,12 @@ from symcirc.transfer.engineering import engineering
 LONGEST_FACTORED = 400
 
 
-def _shifted(ideal: Derivation) -> Iterator[Answer]:
+def shifted_answers(ideal: Derivation) -> Iterator[Answer]:
     """Yield the answers that can shift: loop gains have no poles of their own."""
     return (answer for answer in expanded_answers(ideal) if answer.ask.loop is None and answer.function.order)
 
 
-def _in_symbols(ideal: Derivation, real: Derivation, answer: Answer) -> tuple[FirstOrder, ...]:
+def shift_formulas(ideal: Derivation, real: Derivation, answer: Answer) -> tuple[FirstOrder, ...]:
     """Return the shifts of ω0 and Q in symbols, for an answer of order 2 with a natural frequency."""
     function = answer.function
     if function.order != 2 or not function.denominator[0]:
@@ -37,7 +37,7 @@ def _in_symbols(ideal: Derivation, real: Derivation, answer: Answer) -> tuple[Fi
     return first_order_shifts(ideal, real, answer.ask.name)
 
 
-def _in_numbers(ideal: Derivation, real: Derivation, answer: Answer) -> PoleShifts | None:
+def shift_numbers(ideal: Derivation, real: Derivation, answer: Answer) -> PoleShifts | None:
     """Return how the poles move for the sheet's numbers, or None where one is missing."""
     expanded = real.answer(answer.ask.name)
     if missing_numbers(ideal.sheet, answer) or missing_numbers(ideal.sheet, expanded):
@@ -51,14 +51,14 @@ def shift_text(ideal: Derivation, real: Derivation) -> Iterator[str]:
     Raises Complaint where no amplifier has a gain or a gbw.
     """
     yield ideal.sheet.title
-    answers = list(_shifted(ideal))
+    answers = list(shifted_answers(ideal))
     if not answers:
         yield ""
         yield "nothing that is asked has a pole, so nothing can shift"
     for answer in answers:
         yield ""
         yield f"{ask_text(answer.ask)}: what the real amplifiers change"
-        formulas = _in_symbols(ideal, real, answer)
+        formulas = shift_formulas(ideal, real, answer)
         if not real_amplifiers(ideal):
             yield "  nothing: no amplifier has a gain or a gbw"
             continue
@@ -68,7 +68,7 @@ def shift_text(ideal: Derivation, real: Derivation) -> Iterator[str]:
             yield f"    dw0/w0 by {shift.parameter}: {_shown(shift.omega0)}"
             if shift.q is not None:
                 yield f"    dQ/Q   by {shift.parameter}: {_shown(shift.q)}"
-        numbers = _in_numbers(ideal, real, answer)
+        numbers = shift_numbers(ideal, real, answer)
         if numbers is None:
             yield "  (with every value fixed, the shift of each pole in numbers follows here)"
             continue
@@ -87,7 +87,7 @@ def _shown(formula: sympy.Expr) -> str:
 
 def _poles_text(shifts: PoleShifts) -> Iterator[str]:
     yield "  in numbers                          first order        exact"
-    for pole, other in _pairs(shifts.poles):
+    for pole, other in pole_groups(shifts.poles):
         pair = None if other is None else pair_shift(pole, other)
         if pair is None:
             yield from _single_text(pole)
@@ -98,7 +98,7 @@ def _poles_text(shifts: PoleShifts) -> Iterator[str]:
             yield f"    one more pole, at f = {engineering(abs(extra) / (2 * math.pi), 'Hz')}"
 
 
-def _pairs(poles: tuple[PoleShift, ...]) -> Iterator[tuple[PoleShift, PoleShift | None]]:
+def pole_groups(poles: tuple[PoleShift, ...]) -> Iterator[tuple[PoleShift, PoleShift | None]]:
     """Yield complex pairs together (a stage of order 2 is one pair, real or not), real poles alone."""
     if len(poles) == 2:
         yield poles[0], poles[1]
@@ -133,11 +133,11 @@ def _single_text(pole: PoleShift) -> Iterator[str]:
 def shift_json(ideal: Derivation, real: Derivation) -> dict[str, Any]:
     """Return the shifts of every ask as JSON: formulas as strings, poles in rad/s as [real, imaginary]."""
     asks = {}
-    for answer in _shifted(ideal):
-        numbers = _in_numbers(ideal, real, answer)
+    for answer in shifted_answers(ideal):
+        numbers = shift_numbers(ideal, real, answer)
         asks[answer.ask.name] = {
             "shift": {
-                "first_order": [_formula_json(shift) for shift in _in_symbols(ideal, real, answer)],
+                "first_order": [_formula_json(shift) for shift in shift_formulas(ideal, real, answer)],
                 "poles": None if numbers is None else [_pole_json(pole) for pole in numbers.poles],
                 "others": None if numbers is None else [_complex(pole) for pole in numbers.others],
             }

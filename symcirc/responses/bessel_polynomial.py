@@ -15,6 +15,7 @@ import sympy
 from sympy import Integer, Rational
 
 from symcirc.responses.exact import GUARD_DIGITS, KEPT_DIGITS, Coefficients, digits, product
+from symcirc.responses.numeric import mended_root, real_factors
 
 _WORKING_DIGITS = KEPT_DIGITS + 2 * GUARD_DIGITS
 
@@ -44,19 +45,15 @@ def bessel_sections(order: int) -> tuple[Coefficients, ...]:
     if order <= 2:
         return (tuple(Integer(c) for c in whole),)
     with mpmath.workdps(_WORKING_DIGITS):
-        roots = _upper_roots(whole)
-        first = [(-z, 1) for z in roots if isinstance(z, mpmath.mpf)]
-        pairs = [(abs(z) ** 2, -2 * z.real, 1) for z in roots if isinstance(z, mpmath.mpc)]
-        pairs.sort(key=lambda pair: mpmath.sqrt(pair[0]) / pair[1])
-        factors: list[tuple[mpmath.mpf, ...]] = [*first, *pairs]
+        factors = real_factors(mended_root(whole, start) for start in _upper_starts(whole))
         tolerance = mpmath.mpf(10) ** -KEPT_DIGITS
         matches = all(abs(a - b) < tolerance * b for a, b in zip(product(factors), whole, strict=True))
         assert matches, "the sections of a Bessel polynomial do not multiply to it"
         return tuple((*(sympy.Float(c, KEPT_DIGITS) for c in factor[:-1]), Integer(1)) for factor in factors)
 
 
-def _upper_roots(whole: tuple[int, ...]) -> list[mpmath.mpf | mpmath.mpc]:
-    """Return the roots on and above the real axis, the one real root of an odd order as a real number."""
+def _upper_starts(whole: tuple[int, ...]) -> list[mpmath.mpf | mpmath.mpc]:
+    """Return the roots on and above the real axis, roughly, the one real root of an odd order as a real number."""
     import numpy as np
 
     order = len(whole) - 1
@@ -64,19 +61,7 @@ def _upper_roots(whole: tuple[int, ...]) -> list[mpmath.mpf | mpmath.mpc]:
     starts = [mpmath.mpc(complex(z)) for z in rough]
     if order % 2:
         starts[-1] = starts[-1].real
-    return [_exact_root(whole, start) for start in starts]
-
-
-def _exact_root(whole: tuple[int, ...], start: mpmath.mpc) -> mpmath.mpc:
-    """Return the root near ``start`` by Newton's method, to the working precision."""
-    falling = whole[::-1]
-    slope = [k * whole[k] for k in range(len(whole) - 1, 0, -1)]
-    root = step = start
-    # Each step squares the error: after one of half the digits, all digits stand.
-    while abs(step) > abs(root) * mpmath.mpf(10) ** (-_WORKING_DIGITS // 2):
-        step = mpmath.polyval(falling, root) / mpmath.polyval(slope, root)
-        root -= step
-    return root
+    return starts
 
 
 def bessel_frequency(order: int, loss_db: sympy.Expr) -> sympy.Expr:

@@ -12,7 +12,13 @@ from types import MappingProxyType
 import sympy
 from sympy import Rational
 
+from symcirc.responses.critical import critical
+from symcirc.responses.elliptic import elliptic, moved_elliptic, rough_elliptic
 from symcirc.responses.exact import KEPT_DIGITS, ResponseError, digits
+from symcirc.responses.gaussian import gaussian, rough_gaussian
+from symcirc.responses.inverse_chebyshev import inverse_chebyshev, moved_inverse_chebyshev
+from symcirc.responses.legendre import legendre, rough_legendre
+from symcirc.responses.linear_phase import linear_phase, rough_linear_phase
 from symcirc.responses.prototype import (
     SHORT_ORDER,
     Prototype,
@@ -21,6 +27,14 @@ from symcirc.responses.prototype import (
     chebyshev,
     check_loss,
     rescaled,
+)
+from symcirc.responses.rough import (
+    Rough,
+    rough_bessel,
+    rough_butterworth,
+    rough_chebyshev,
+    rough_critical,
+    rough_inverse_chebyshev,
 )
 
 _FILTERS = ("lowpass", "highpass", "bandpass", "bandstop")
@@ -31,7 +45,8 @@ class Family:
     """A family of responses.
 
     ``build`` makes a prototype from the order and then, in the order of ``needs``, the family's own numbers
-    (``ripple`` in dB). ``kinds`` are what it can be transformed to. ``edge`` says in words where its edge is.
+    (``ripple`` in dB or, for linear phase, in degrees; ``stop`` in dB); ``rough`` does so in doubles, with its
+    edge anywhere. ``kinds`` are what it can be transformed to. ``edge`` says in words where its edge is.
     ``moved`` makes, of a prototype of the family, the one whose loss at 1 rad/s is so many dB, relative to
     the nominal gain.
     """
@@ -41,6 +56,7 @@ class Family:
     kinds: tuple[str, ...]
     edge: str
     build: Callable[..., Prototype]
+    rough: Callable[..., Rough]
     moved: Callable[[Prototype, sympy.Expr], Prototype]
 
 
@@ -93,10 +109,44 @@ def _moved_bessel(prototype: Prototype, loss_db: sympy.Expr) -> Prototype:
     return bessel(prototype.order, loss_db)
 
 
+def _moved_gaussian(prototype: Prototype, loss_db: sympy.Expr) -> Prototype:
+    return gaussian(prototype.order, loss_db)
+
+
+def _moved_legendre(prototype: Prototype, loss_db: sympy.Expr) -> Prototype:
+    return legendre(prototype.order, loss_db)
+
+
+def _moved_linear_phase(prototype: Prototype, loss_db: sympy.Expr) -> Prototype:
+    return linear_phase(prototype.order, prototype.ripple_deg, loss_db)
+
+
+def _moved_critical(prototype: Prototype, loss_db: sympy.Expr) -> Prototype:
+    return critical(prototype.order, loss_db)
+
+
+_HALF, _RIPPLE = "half power (-3.01 dB)", "the end of the ripple"
+_BOTH = ("ripple", "stop")
 _FAMILIES = (
-    Family("butterworth", (), _FILTERS, "half power (-3.01 dB)", butterworth, _moved_butterworth),
-    Family("chebyshev", ("ripple",), _FILTERS, "the end of the ripple", chebyshev, _moved_chebyshev),
-    Family("bessel", (), (*_FILTERS, "allpass"), "half power (-3.01 dB)", bessel, _moved_bessel),
+    Family("butterworth", (), _FILTERS, _HALF, butterworth, rough_butterworth, _moved_butterworth),
+    Family("chebyshev", ("ripple",), _FILTERS, _RIPPLE, chebyshev, rough_chebyshev, _moved_chebyshev),
+    Family(
+        "inverse chebyshev",
+        ("stop",),
+        _FILTERS,
+        "the beginning of the stop band",
+        inverse_chebyshev,
+        rough_inverse_chebyshev,
+        moved_inverse_chebyshev,
+    ),
+    Family("elliptic", _BOTH, _FILTERS, _RIPPLE, elliptic, rough_elliptic, moved_elliptic),
+    Family("bessel", (), (*_FILTERS, "allpass"), _HALF, bessel, rough_bessel, _moved_bessel),
+    Family("gaussian", (), _FILTERS, _HALF, gaussian, rough_gaussian, _moved_gaussian),
+    Family("legendre", (), _FILTERS, _HALF, legendre, rough_legendre, _moved_legendre),
+    Family(
+        "linear phase", ("ripple",), _FILTERS, _HALF, linear_phase, rough_linear_phase, _moved_linear_phase
+    ),
+    Family("critical", (), _FILTERS, _HALF, critical, rough_critical, _moved_critical),
 )
 
 #: The families by the name that a target gives them.

@@ -46,7 +46,9 @@ class Prototype:
 
     The nominal gain, the largest magnitude in the pass band, is 1. ``sections`` are the factors of the
     denominator, one of first order before those of second order, and these by rising Q. ``edge_loss_db`` is
-    the loss at the edge relative to the nominal gain. Numbers are exact, but where no short closed form
+    the loss at the edge relative to the nominal gain; ``ripple_db``, ``stop_db`` and ``ripple_deg`` are the
+    family's own numbers. ``zeros`` are the squares of the positive frequencies at which nothing passes, those
+    nearest to the pass band last. Numbers are exact, but where no short closed form
     exists (each family says where) they are rounded to 70 digits, of which 60 and more are correct.
     """
 
@@ -57,6 +59,9 @@ class Prototype:
     denominator: Coefficients
     edge_loss_db: sympy.Expr
     ripple_db: sympy.Expr | None = None
+    stop_db: sympy.Expr | None = None
+    ripple_deg: sympy.Expr | None = None
+    zeros: tuple[sympy.Expr, ...] = ()
 
     @property
     def dc_gain(self) -> sympy.Expr:
@@ -82,10 +87,10 @@ def butterworth(order: int) -> Prototype:
     >>> butterworth(5).denominator
     (1, 1 + sqrt(5), sqrt(5) + 3, sqrt(5) + 3, 1 + sqrt(5), 1)
     """
-    _check_order(order)
+    check_order(order)
     one = Integer(1)
     first = ((one, one),) if order % 2 else ()
-    pairs = tuple((one, two_cosine(turn), one) for turn in _pair_turns(order))
+    pairs = tuple((one, two_cosine(turn), one) for turn in pair_turns(order))
     lower = _butterworth_coefficients(order, order // 2)
     denominator = lower + lower[: (order + 1) // 2][::-1]  # the polynomial reads the same both ways
     return Prototype("butterworth", order, first + pairs, (one,), denominator, HALF_POWER_DB)
@@ -111,22 +116,22 @@ def chebyshev(order: int, ripple_db: sympy.Expr) -> Prototype:
     >>> chebyshev(4, Integer(20)).dc_gain
     1/10
     """
-    _check_order(order)
+    check_order(order)
     check_loss(ripple_db, "the ripple")
     gain = 10 ** (Rational(1, 20) * ripple_db)
     epsilon = sympy.sqrt(gain**2 - 1)
     numerator = 1 / (2 ** (order - 1) * epsilon)
     at_zero = numerator if order % 2 else gain * numerator
     axis = _minor_axis(order, gain)
-    sections = _chebyshev_sections(order, axis)
+    sections = ellipse_sections(order, axis)
     if order <= 2:  # here other forms are shorter than those by the half axis
         middle = (sympy.sqrt(gain / epsilon - 1),) if order == 2 else ()
         sections = ((at_zero, *middle, Integer(1)),)
         denominator = sections[0]
     elif order <= SHORT_ORDER:
-        denominator = (at_zero, *_chebyshev_coefficients(order, axis)[1:])
+        denominator = (at_zero, *ellipse_coefficients(order, axis)[1:])
     else:
-        denominator = _rounded_product(sections)
+        denominator = rounded_product(sections)
         numerator = denominator[0] if order % 2 else digits(numerator, KEPT_DIGITS)
     return Prototype("chebyshev", order, sections, (numerator,), denominator, ripple_db, ripple_db)
 
@@ -147,7 +152,7 @@ def bessel(order: int, edge_loss_db: sympy.Expr = HALF_POWER_DB) -> Prototype:
     >>> bessel(2).denominator
     (1/2 + sqrt(5)/2, 3*sqrt(1/6 + sqrt(5)/6), 1)
     """
-    _check_order(order)
+    check_order(order)
     check_loss(edge_loss_db, "the loss at the edge")
     denominator = tuple(Integer(c) for c in reverse_bessel(order))
     sections = bessel_sections(order)
@@ -162,6 +167,21 @@ def rescaled(prototype: Prototype, factor: sympy.Expr) -> Prototype:
         sections=tuple(scaled(section, len(section) - 1, factor) for section in prototype.sections),
         numerator=scaled(prototype.numerator, prototype.order, factor),
         denominator=scaled(prototype.denominator, prototype.order, factor),
+        zeros=tuple(square * factor**2 for square in prototype.zeros),
+    )
+
+
+def all_pole(
+    family: str,
+    sections: tuple[Coefficients, ...],
+    denominator: Coefficients,
+    edge_loss_db: sympy.Expr,
+    ripple_deg: sympy.Expr | None = None,
+) -> Prototype:
+    """Return the prototype without zeros whose gain is 1 at zero; ``denominator`` is the product of the sections."""
+    order = len(denominator) - 1
+    return Prototype(
+        family, order, sections, denominator[:1], denominator, edge_loss_db, ripple_deg=ripple_deg
     )
 
 
@@ -178,7 +198,8 @@ def check_loss(loss_db: sympy.Expr, what: str) -> None:
         )
 
 
-def _check_order(order: int) -> None:
+def check_order(order: int) -> None:
+    """Refuse an order that no prototype has."""
     mend = f"give an order from 1 to {LARGEST_ORDER}"
     if order < 1:
         raise ResponseError(f"there is no response of order {order}", mend)
@@ -189,7 +210,7 @@ def _check_order(order: int) -> None:
         )
 
 
-def _pair_turns(order: int) -> list[sympy.Rational]:
+def pair_turns(order: int) -> list[sympy.Rational]:
     """Return the Butterworth pole pairs' angles from the negative real axis, in half turns, by rising Q."""
     return [Rational(k, 2 * order) for k in range(1 + order % 2, order, 2)]
 
@@ -216,27 +237,27 @@ def _minor_axis(order: int, gain: sympy.Expr) -> sympy.Expr:
     return (root - 1 / root) / 2
 
 
-def _chebyshev_sections(order: int, axis: sympy.Expr) -> tuple[Coefficients, ...]:
+def ellipse_sections(order: int, axis: sympy.Expr) -> tuple[Coefficients, ...]:
     """Return the sections of the ellipse whose half axis along the real axis is ``axis``, by rising Q."""
     one = Integer(1)
     sections: list[Coefficients] = [(axis, one)] if order % 2 else []
-    for turn in _pair_turns(order):
+    for turn in pair_turns(order):
         squared_sine = (2 - two_cosine(2 * turn)) / 4
         sections.append((axis**2 + squared_sine, axis * two_cosine(turn), one))
     return tuple(sections)
 
 
-def _chebyshev_coefficients(order: int, axis: sympy.Expr) -> Coefficients:
-    """Return the whole denominator, each coefficient a polynomial in the half axis with short radicals."""
+def ellipse_coefficients(order: int, axis: sympy.Expr) -> Coefficients:
+    """Return Chebyshev's whole denominator, each coefficient a polynomial in the half axis with short radicals."""
     symbol = sympy.Symbol("axis", positive=True)
     # At order 4 both cosines are written with one square root, so that their products come out short.
     other = {two_cosine(Rational(3, 8)): (sympy.sqrt(2) - 1) * two_cosine(Rational(1, 8))}
-    sections = [[c.subs(other) for c in section] for section in _chebyshev_sections(order, symbol)]
+    sections = [[c.subs(other) for c in section] for section in ellipse_sections(order, symbol)]
     whole = (sympy.collect(sympy.expand(c), symbol) for c in product(sections))
     return tuple(c.subs(symbol, axis) for c in whole)
 
 
-def _rounded_product(sections: tuple[Coefficients, ...]) -> Coefficients:
+def rounded_product(sections: tuple[Coefficients, ...]) -> Coefficients:
     """Return the product of exact monic sections, rounded to 70 digits."""
     known = [[digits(c, KEPT_DIGITS + GUARD_DIGITS) for c in section] for section in sections]
     return (*(sympy.Float(c, KEPT_DIGITS) for c in product(known)[:-1]), Integer(1))

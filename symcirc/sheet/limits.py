@@ -49,7 +49,7 @@ def read_buyables(
     """Return what can be bought; raises Complaint for an unknown kind or series, or a wrong unit."""
     buyables: dict[str, Buyable] = {}
     for line in lines:
-        kind, series = line.kind.text, line.series
+        kind = line.kind.text
         if kind not in BUYABLE:
             raise Complaint(
                 line.kind.place,
@@ -63,16 +63,38 @@ def read_buyables(
                 f"parts {kind} is given twice: it is on line {first} already",
                 "keep one of the two lines",
             )
-        if series.text not in SERIES:
-            raise Complaint(series.place, f"{series.text} is not a series of IEC 60063", choices(SERIES))
-        if line.tolerance is not None:
-            _check_tolerance(line.tolerance, settled)
-        if line.low and line.high:
-            for value in (line.low, line.high):
-                _check_bought(kind, value, symbols, settled)
-            refuse_empty(line.low, line.high, settled)
-        buyables[kind] = Buyable(kind, series.text, line.tolerance, line.low, line.high, line.kind.place)
+        low, high = _range(line, symbols, settled)
+        pairs, place = bool(line.pairs), line.kind.place
+        match line.bought:
+            case st.Series(name=series, tolerance=tolerance):
+                if series.text not in SERIES:
+                    raise Complaint(
+                        series.place, f"{series.text} is not a series of IEC 60063", choices(SERIES)
+                    )
+                if tolerance is not None:
+                    _check_tolerance(tolerance, settled)
+                bought = Buyable(kind, series.text, tolerance, low, high, place, pairs=pairs)
+            case st.Stock(path=path):
+                bought = Buyable(kind, None, None, low, high, place, path.text, path.place, pairs)
+        buyables[kind] = bought
     return tuple(buyables.values())
+
+
+def _range(
+    line: st.PartsLine, symbols: Mapping[str, Symbol], settled: Settled
+) -> tuple[Value | None, Value | None]:
+    """Return the range of a line, or two Nones; raises Complaint for what is said twice, and for no range."""
+    if len(line.ranges) > 1:
+        raise Complaint(line.ranges[1][0].place, "the range is given twice", "keep one of the two")
+    if len(line.pairs) > 1:
+        raise Complaint(line.pairs[1].place, "`pairs` is said twice", "remove one of the two")
+    if not line.ranges:
+        return None, None
+    low, high = line.ranges[0]
+    for value in (low, high):
+        _check_bought(line.kind.text, value, symbols, settled)
+    refuse_empty(low, high, settled)
+    return low, high
 
 
 def _check_tolerance(value: Value, settled: Settled) -> None:

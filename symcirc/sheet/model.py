@@ -177,14 +177,21 @@ class Limit:
 
 @dataclass(frozen=True)
 class Buyable:
-    """What can be bought of a kind of part: series, tolerance in percent, range in SI base units."""
+    """What can be bought of a kind of part: a series or a list of stock, tolerance in percent, range in SI base units.
+
+    ``series`` is E3 to E192, or None where ``stock`` is the path of a list, as the sheet writes it (relative to the
+    sheet). ``pairs`` tells that two pieces in series or in parallel may make a value.
+    """
 
     kind: str
-    series: str
+    series: str | None
     tolerance: Value | None
     low: Value | None
     high: Value | None
     place: Place
+    stock: str | None = None
+    stock_place: Place | None = None
+    pairs: bool = False
 
 
 @dataclass(frozen=True)

@@ -229,10 +229,23 @@ class SheetReader(ExpressionReader):
         return st.LimitLine(self.name(children[1]), str(children[4]), loss, low, high)
 
     def parts(self, children: Children) -> st.PartsLine:
-        """``parts KIND: SERIES ...``."""
-        kind, series = self.name(children[1]), self.name(children[3])
-        tolerance, low, high = children[4], children[7], children[9]
-        return st.PartsLine(kind, series, tolerance, low, high)
+        """``parts KIND: SERIES ...`` or ``parts KIND: stock FILE ...``."""
+        behind = children[4:]
+        return st.PartsLine(
+            self.name(children[1]),
+            children[3],
+            tuple(c for c in behind if isinstance(c, tuple)),
+            tuple(self.name(c) for c in behind if _is(c, "PAIRS")),
+        )
+
+    def series(self, children: Children) -> st.Series:
+        """``SERIES tolerance``."""
+        return st.Series(self.name(children[0]), children[1])
+
+    def stock(self, children: Children) -> st.Stock:
+        """``stock FILE``."""
+        path = self.name(children[1])
+        return st.Stock(replace(path, text=path.text.strip('"')))
 
     def note(self, children: Children) -> st.NoteLine:
         """``note "..."``."""

@@ -275,8 +275,9 @@ REST = (
         "parts",
         ":[ \t]*¦(?P<at>\\S*)",
         "a series was expected here",
-        "write E3, E6, E12, E24, E48, E96 or E192",
+        "write E3, E6, E12, E24, E48, E96 or E192, or stock and a file",
     ),
+    Slip("parts", "stock[ \t]*¦", "the file behind `stock` is missing", "write stock drawer.csv"),
     Slip(
         "parts",
         "E[0-9].*¦(?P<at>from)",
@@ -284,7 +285,10 @@ REST = (
         "write E96 1 %, from 1 kohm to 1 Mohm",
     ),
     Slip(
-        "parts", ",[ \t]*¦(?P<at>\\S*)", "only a range stands behind the comma", "write from 1 kohm to 1 Mohm"
+        "parts",
+        ",[ \t]*¦(?P<at>\\S*)",
+        "only a range stands behind the comma, or the word `pairs`",
+        "write from 1 kohm to 1 Mohm",
     ),
     Slip(
         "parts", r"E[0-9]+[ \t]*¦(?P<at>\S+)", "a tolerance was expected here", "write it in %, as in E96 1 %"

@@ -205,14 +205,28 @@ class LimitLine:
 
 
 @dataclass(frozen=True)
+class Series:
+    """``SERIES tolerance``."""
+
+    name: Name
+    tolerance: Value | None
+
+
+@dataclass(frozen=True)
+class Stock:
+    """``stock FILE``: the path without its quotes."""
+
+    path: Name
+
+
+@dataclass(frozen=True)
 class PartsLine:
-    """``parts KIND: SERIES tolerance, from value to value``."""
+    """``parts KIND: SERIES tolerance, from value to value, pairs``: ranges and words ``pairs`` as often as written."""
 
     kind: Name
-    series: Name
-    tolerance: Value | None
-    low: Value | None
-    high: Value | None
+    bought: Series | Stock
+    ranges: tuple[tuple[Value, Value], ...]
+    pairs: tuple[Name, ...]
 
 
 @dataclass(frozen=True)

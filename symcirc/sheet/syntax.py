@@ -57,6 +57,7 @@ TERMINALS = {
     "QUANTITY": "V_node or I_part",
     "LINE_END": "the end of the line",
     "SERIES": "a series (E3 to E192)",
+    "FILE": "the path of a file",
     "COMPARISON": "`<=` or `>=`",
     "TERMINAL": "a terminal",
     "PARAMETER": "a value's word",

@@ -15,7 +15,7 @@ _COMMON = (2, Fraction(1, 2), 4, Fraction(1, 4), -1)
 
 def of_name(name: Name, rank: int, vocabulary: Vocabulary) -> float:
     """Return what a name costs: one that the working has not used, that is far away, or is one of several."""
-    cost = 0.2 * rank
+    cost = 0.4 * rank
     if name.text not in vocabulary.used:
         cost += 0.8 if name.text.startswith("I_") else 0.3
     return cost + (0.2 if name.text in vocabulary.distant else 0.0)

@@ -56,11 +56,11 @@ def latex(form: Form) -> str:
         case Negative():
             return "-" + _factor(form.operand, (Sum, Negative))
         case Product():
-            return " ".join(_factor(factor, (Sum, Negative)) for factor in form.factors)
+            return _product(form)
         case Divided():
             return _divided(form)
         case Power():
-            base = _factor(form.base, (Sum, Negative, Divided, Product, Power, Root))
+            base = _factor(form.base, (Sum, Negative, Divided, Product, Power, Root, Decimal))
             return f"{base}^{{{form.exponent}}}"
     return rf"\sqrt{{{latex(form.operand)}}}"
 
@@ -121,6 +121,16 @@ def _sum(form: Sum) -> str:
         else:
             written += " + " + _factor(term, (Sum,))
     return written
+
+
+def _product(form: Product) -> str:
+    r"""Write factors side by side, with a dot before one that begins with a digit: 4 and 25 are not 425."""
+    text = ""
+    for factor in form.factors:
+        written = _factor(factor, (Sum, Negative))
+        join = r" \cdot " if written[0].isdigit() else " "
+        text += join + written if text else written
+    return text
 
 
 def _factor(form: Form, in_brackets: tuple[type[Form], ...]) -> str:

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 from symcirc.transfer.latex import PARAMETERS
 
 #: Names that are set as a Greek letter.
-_GREEK = {"pi": ("π", ()), "ω0": ("ω", ("0",))}
+_GREEK = {"pi": ("π", ()), "ω0": ("ω", ("0",)), "Δω0": ("Δω", ("0",))}
 
 
 @dataclass(frozen=True)

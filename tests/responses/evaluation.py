@@ -8,28 +8,54 @@ from collections.abc import Sequence
 import mpmath
 import sympy
 
-from symcirc.responses import Prototype, bessel, butterworth, chebyshev, digits
+from symcirc.responses import (
+    Prototype,
+    bessel,
+    butterworth,
+    chebyshev,
+    critical,
+    digits,
+    elliptic,
+    gaussian,
+    inverse_chebyshev,
+    legendre,
+    linear_phase,
+)
 
 DIGITS = 55
 ORDERS = range(1, 21)
 #: All orders up to 7, and of the higher ones one with cosines, one with square roots, and the highest.
 SOME_ORDERS = (*range(1, 8), 11, 12, 20)
 HALF_DB = sympy.Rational(1, 2)
+STOP_DB = sympy.Integer(60)
 
 
 def prototypes(orders: Sequence[int] = ORDERS) -> list[Prototype]:
-    """Return a prototype of every family and order, Chebyshev with two ripples."""
+    """Return a prototype of every family and order, Chebyshev and linear phase with two ripples."""
     return [
         prototype
         for n in orders
-        for prototype in (butterworth(n), chebyshev(n, HALF_DB), chebyshev(n, sympy.Integer(3)), bessel(n))
+        for prototype in (
+            butterworth(n),
+            chebyshev(n, HALF_DB),
+            chebyshev(n, sympy.Integer(3)),
+            inverse_chebyshev(n, STOP_DB),
+            elliptic(n, HALF_DB, STOP_DB),
+            bessel(n),
+            gaussian(n),
+            legendre(n),
+            linear_phase(n, sympy.Rational(1, 20)),
+            linear_phase(n, sympy.Rational(1, 2)),
+            critical(n),
+        )
     ]
 
 
 def label(prototype: Prototype) -> str:
     """Name a prototype in a test's identifier."""
     ripple = "" if prototype.ripple_db is None else f"-{prototype.ripple_db}dB"
-    return f"{prototype.family}-{prototype.order}{ripple}"
+    degrees = "" if prototype.ripple_deg is None else f"-{float(prototype.ripple_deg)}deg"
+    return f"{prototype.family}-{prototype.order}{ripple}{degrees}"
 
 
 def numbers(coefficients: Sequence[sympy.Expr]) -> list[mpmath.mpf]:
@@ -49,9 +75,11 @@ def value(coefficients: Sequence[mpmath.mpf], s: mpmath.mpc) -> mpmath.mpc:
 
 
 def squared_loss(prototype: Prototype, omega: mpmath.mpf) -> mpmath.mpf:
-    """Return 1/|H(jω)|²."""
+    """Return 1/|H(jω)|², by its factors: near many zeros the expanded numerator loses half of the digits."""
     s = mpmath.mpc(0, omega)
-    return abs(value(numbers(prototype.denominator), s) / value(numbers(prototype.numerator), s)) ** 2
+    over = numbers(prototype.numerator)[-1] * mpmath.fprod(x - omega**2 for x in numbers(prototype.zeros))
+    under = mpmath.fprod(value(numbers(section), s) for section in prototype.sections)
+    return abs(under / over) ** 2
 
 
 def convolved(a: Sequence[mpmath.mpf], b: Sequence[mpmath.mpf]) -> list[mpmath.mpf]:

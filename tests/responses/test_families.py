@@ -9,7 +9,17 @@ from sympy import Integer, Rational
 
 from symcirc.responses import FAMILIES, HALF_POWER_DB, Prototype, ResponseError, chebyshev, edge_at
 
-from .evaluation import DIGITS, HALF_DB, SOME_ORDERS, convolved, label, numbers, prototypes, squared_loss
+from .evaluation import (
+    DIGITS,
+    HALF_DB,
+    SOME_ORDERS,
+    STOP_DB,
+    convolved,
+    label,
+    numbers,
+    prototypes,
+    squared_loss,
+)
 
 EVERY = pytest.mark.parametrize("prototype", prototypes(SOME_ORDERS), ids=label)
 
@@ -21,14 +31,25 @@ def _precision():
 
 
 def test_the_table_knows_what_each_family_needs_and_gives() -> None:
-    assert list(FAMILIES) == ["butterworth", "chebyshev", "bessel"]
+    assert list(FAMILIES) == [
+        "butterworth",
+        "chebyshev",
+        "inverse chebyshev",
+        "elliptic",
+        "bessel",
+        "gaussian",
+        "legendre",
+        "linear phase",
+        "critical",
+    ]
     for name, family in FAMILIES.items():
-        numbers_of_the_family = [HALF_DB for _ in family.needs]
+        numbers_of_the_family = [{"ripple": HALF_DB, "stop": STOP_DB}[need] for need in family.needs]
         prototype = family.build(4, *numbers_of_the_family)
         assert (family.name, prototype.family, prototype.order) == (name, name, 4)
         assert {"lowpass", "highpass", "bandpass", "bandstop"} <= set(family.kinds)
     assert [name for name, family in FAMILIES.items() if "allpass" in family.kinds] == ["bessel"]
     assert FAMILIES["chebyshev"].needs == ("ripple",)
+    assert FAMILIES["elliptic"].needs == ("ripple", "stop")
 
 
 @EVERY

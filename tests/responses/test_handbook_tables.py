@@ -6,7 +6,16 @@ import mpmath
 import pytest
 import sympy
 
-from symcirc.responses import bessel, butterworth, chebyshev, digits, edge_at
+from symcirc.responses import (
+    bessel,
+    butterworth,
+    chebyshev,
+    digits,
+    edge_at,
+    legendre,
+    legendre_square,
+    linear_phase,
+)
 from symcirc.responses.bessel_polynomial import bessel_frequency, reverse_bessel
 from symcirc.responses.prototype import HALF_POWER_DB
 
@@ -71,6 +80,29 @@ BESSEL_POLES = {
     5: [("0.958", "1.471"), ("1.381", "0.718"), ("1.502", "0")],
 }
 
+# Poles -a ± jb of the low-pass of linear phase with equiripple error, half power at 1 rad/s, by error in degrees.
+# A. I. Zverev, "Handbook of Filter Synthesis" (1967), tables of pole locations; from memory, to four decimals.
+LINEAR_PHASE_POLES = {
+    ("1/20", 2): [("1.0087", "0.6680")],
+    ("1/20", 3): [("0.8541", "1.0725"), ("1.0459", "0")],
+    ("1/20", 4): [("0.7448", "1.4008"), ("0.9648", "0.4748")],
+    ("1/2", 2): [("0.8590", "0.6981")],
+    ("1/2", 3): [("0.6969", "1.1318"), ("0.8257", "0")],
+    ("1/2", 4): [("0.6037", "1.4983"), ("0.7448", "0.5133")],
+}
+
+# The Legendre low-pass: L_n by powers of ω². A. Papoulis, "Optimum filters with monotonic response" (1958), and M.
+# Fukada (1959) for even orders; also in L. Weinberg (1962), chapter 11; from memory.
+LEGENDRE = {
+    2: (0, 0, 1),
+    3: (0, 1, -3, 3),
+    4: (0, 0, 3, -8, 6),
+    5: (0, 1, -8, 28, -40, 20),
+    6: (0, 0, 6, -40, 105, -120, 50),
+    7: (0, 1, -15, 105, -355, 615, -525, 175),
+    8: (0, 0, 10, -120, 615, -1624, 2310, -1680, 490),
+}
+
 # Q of the sections of a Butterworth cascade. Common to op-amp filter handbooks, such as D. Lancaster, "Active
 # Filter Cookbook" (1975), as damping 1/Q; from memory.
 BUTTERWORTH_Q = {
@@ -119,6 +151,29 @@ def test_bessel_poles_are_those_printed(order: int) -> None:
     for (real, imaginary), (printed_real, printed_imaginary) in zip(found, BESSEL_POLES[order], strict=True):
         assert agrees(real, printed_real)
         assert agrees(imaginary, printed_imaginary)
+
+
+@pytest.mark.parametrize(("ripple", "order"), LINEAR_PHASE_POLES)
+def test_linear_phase_poles_are_those_printed(ripple: str, order: int) -> None:
+    sections = linear_phase(order, sympy.Rational(ripple)).sections
+    for section, (printed_real, printed_imaginary) in zip(
+        reversed(sections), LINEAR_PHASE_POLES[ripple, order], strict=True
+    ):
+        real = section[0] if len(section) == 2 else section[1] / 2
+        imaginary = sympy.S.Zero if len(section) == 2 else sympy.sqrt(section[0] - real**2)
+        assert agrees(real, printed_real)
+        assert agrees(imaginary, printed_imaginary)
+
+
+@pytest.mark.parametrize("order", LEGENDRE)
+def test_legendre_polynomials_are_those_printed(order: int) -> None:
+    assert legendre_square(order) == LEGENDRE[order]
+
+
+def test_the_legendre_low_pass_of_order_3_is_the_one_printed() -> None:
+    # 0.577/(s³ + 1.31 s² + 1.359 s + 0.577): Papoulis (1958), from memory.
+    printed = ["0.577", "1.359", "1.31"]
+    assert all(agrees(c, p) for c, p in zip(legendre(3).denominator, printed, strict=False))
 
 
 @pytest.mark.parametrize("order", BUTTERWORTH_Q)

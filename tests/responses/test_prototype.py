@@ -9,6 +9,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from symcirc.responses import (
+    FAMILIES,
     LARGEST_ORDER,
     Prototype,
     ResponseError,
@@ -16,9 +17,15 @@ from symcirc.responses import (
     bessel_polynomial,
     butterworth,
     chebyshev,
+    critical,
+    elliptic,
+    gaussian,
+    inverse_chebyshev,
+    legendre,
+    linear_phase,
 )
 
-from .evaluation import DIGITS, HALF_DB, ORDERS, convolved, label, numbers, prototypes, squared_loss
+from .evaluation import DIGITS, HALF_DB, ORDERS, STOP_DB, convolved, label, numbers, prototypes, squared_loss
 
 EVERY = pytest.mark.parametrize("prototype", prototypes(), ids=label)
 TOLERANCE = mpmath.mpf(10) ** -45
@@ -54,12 +61,26 @@ def test_denominators_are_monic_and_sections_are_stable_and_go_by_rising_q(proto
             constant, middle, _ = numbers(section)
             qualities.append(mpmath.sqrt(constant) / middle)
     assert qualities == sorted(qualities)
-    assert all(q > 0.5 for q in qualities)  # a pair, not two real poles
+    if prototype.family == "critical":  # its pairs are two real poles in one place
+        assert all(abs(q - mpmath.mpf(1) / 2) < TOLERANCE for q in qualities)
+    else:
+        assert all(q > 0.5 for q in qualities)
+
+
+@EVERY
+def test_zeros_multiply_to_the_numerator(prototype: Prototype) -> None:
+    whole = numbers(prototype.numerator)[-1:]
+    for square in numbers(prototype.zeros):
+        whole = convolved(whole, [square, mpmath.mpf(0), mpmath.mpf(1)])
+    squares = numbers(prototype.zeros)
+    assert squares == sorted(squares, reverse=True)
+    for a, b in zip(whole, numbers(prototype.numerator), strict=True):
+        assert abs(a - b) <= TOLERANCE * b
 
 
 @EVERY
 def test_gain_at_zero_is_one_or_less_by_the_ripple(prototype: Prototype) -> None:
-    even_ripple = prototype.family == "chebyshev" and prototype.order % 2 == 0
+    even_ripple = prototype.ripple_db is not None and prototype.order % 2 == 0
     expected = mpmath.mpf(10) ** (-numbers([prototype.ripple_db])[0] / 20) if even_ripple else 1
     assert abs(numbers([prototype.dc_gain])[0] - expected) < TOLERANCE
     assert abs(squared_loss(prototype, mpmath.mpf(0)) * expected**2 - 1) < TOLERANCE
@@ -161,12 +182,12 @@ def test_bessel_denominator_is_the_reverse_bessel_polynomial_on_another_scale(or
 
 
 def test_bessel_sections_that_do_not_multiply_to_the_polynomial_are_noticed(monkeypatch) -> None:
-    honest = bessel_polynomial._exact_root
+    honest = bessel_polynomial.mended_root
 
     def slipping(whole, start):
         return honest(whole, start) * (1 + mpmath.mpf(10) ** -60)
 
-    monkeypatch.setattr(bessel_polynomial, "_exact_root", slipping)
+    monkeypatch.setattr(bessel_polynomial, "mended_root", slipping)
     with pytest.raises(AssertionError, match="do not multiply"):
         bessel_polynomial.bessel_sections(5)
 
@@ -174,8 +195,18 @@ def test_bessel_sections_that_do_not_multiply_to_the_polynomial_are_noticed(monk
 @pytest.mark.parametrize("order", [0, -3, LARGEST_ORDER + 1, 10**9])
 @pytest.mark.parametrize(
     "build",
-    [butterworth, bessel, lambda n: chebyshev(n, HALF_DB)],
-    ids=["butterworth", "bessel", "chebyshev"],
+    [
+        butterworth,
+        bessel,
+        lambda n: chebyshev(n, HALF_DB),
+        lambda n: inverse_chebyshev(n, STOP_DB),
+        lambda n: elliptic(n, HALF_DB, STOP_DB),
+        gaussian,
+        legendre,
+        lambda n: linear_phase(n, HALF_DB),
+        critical,
+    ],
+    ids=list(FAMILIES),
 )
 def test_an_order_out_of_range_is_refused_at_once(build, order: int) -> None:
     with pytest.raises(ResponseError, match=f"order (of )?{order}") as refusal:

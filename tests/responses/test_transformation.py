@@ -19,12 +19,17 @@ from symcirc.responses import (
     bessel,
     butterworth,
     chebyshev,
+    critical,
     edge_at,
+    elliptic,
+    gaussian,
     highpass,
+    inverse_chebyshev,
+    legendre,
     lowpass,
 )
 
-from .evaluation import DIGITS, HALF_DB, SOME_ORDERS, label, numbers, prototypes, value
+from .evaluation import DIGITS, HALF_DB, SOME_ORDERS, STOP_DB, label, numbers, prototypes, value
 
 EVERY = pytest.mark.parametrize("prototype", prototypes(SOME_ORDERS), ids=label)
 EDGE, CENTRE, BANDWIDTH = 2 * sympy.pi * 1200, 2 * sympy.pi * 1000, 2 * sympy.pi * 150
@@ -118,7 +123,19 @@ def test_coefficients_in_symbols_are_written_as_an_engineer_would() -> None:
 
 
 @pytest.mark.parametrize("order", [19, 20])
-@pytest.mark.parametrize("build", [butterworth, bessel, lambda n: chebyshev(n, HALF_DB)])
+@pytest.mark.parametrize(
+    "build",
+    [
+        butterworth,
+        bessel,
+        lambda n: chebyshev(n, HALF_DB),
+        lambda n: inverse_chebyshev(n, STOP_DB),
+        lambda n: elliptic(n, HALF_DB, STOP_DB),
+        gaussian,
+        legendre,
+        critical,
+    ],
+)
 def test_no_step_of_a_response_of_order_20_takes_more_than_0_3_s(build, order: int) -> None:
     def timed(step):
         start = time.process_time()

@@ -1,0 +1,1 @@
+"""The response of a stage as curves, and the curves as a picture or a table."""
