@@ -40,3 +40,11 @@ def test_a_sheet_with_a_target_matches_it(path, capsys):
         parts = {part.name for part in sheet_of(path).parts}
         assert parts <= set(solution["values"])
         assert all(value > 0 for value in solution["values"].values())
+
+
+def test_the_drawing_beside_the_demo_is_what_draw_makes_of_it(capsys, tmp_path):
+    # made anew by: stagewright draw examples/hive_antialias.stage -o examples/hive_antialias.svg --replace
+    called = call(capsys, "draw", EXAMPLES / "hive_antialias.stage", "-o", tmp_path / "it.svg")
+    assert called.status == 0
+    made, kept = (path / name for path, name in ((tmp_path, "it.svg"), (EXAMPLES, "hive_antialias.svg")))
+    assert made.read_text(encoding="utf-8") == kept.read_text(encoding="utf-8")

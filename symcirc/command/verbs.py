@@ -331,6 +331,13 @@ def _plot_what(words: Namespace) -> tuple[str, ...]:
     return tuple(asked)
 
 
+def note(words: Namespace, progress: ProgressLine) -> int:
+    """Write the design note of a sheet."""
+    from symcirc.command.note import write_note
+
+    return write_note(words, read_sheet(read_file(words.sheet)), progress)
+
+
 def _wanted(sheet: Sheet, ask: str | None) -> set[str] | None:
     if ask is None:
         return None
@@ -369,4 +376,5 @@ VERBS: dict[str, Callable[[Namespace, ProgressLine], int]] = {
     "values": values,
     "draw": draw,
     "plot": plot,
+    "note": note,
 }

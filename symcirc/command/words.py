@@ -19,6 +19,7 @@ its standard form, and the design equations for a target.
   stagewright values stage.stage             preferred values for the target, ranked
   stagewright draw   stage.stage -o it.svg   the circuit as a picture, proved to be the circuit
   stagewright plot   stage.stage -o it.svg   the response as a picture, with the target and the limits
+  stagewright note   stage.stage -o it.pdf   the design note, which a reviewer can check line by line
 
 `stagewright VERB --help` shows each verb with an example. SHEET may be - for standard input.
 Exit status: 0 done, 1 the target cannot be met or a line is false, 2 something to mend, 70 a fault of the program.
@@ -94,6 +95,18 @@ WHAT holds, with commas between, magnitude, passband (the gain near its nominal 
 example: a first-order low-pass
   printf 'in -- R1 -- out -- C1 -- gnd\\nfix R1 = 1 kohm, C1 = 10 nF\\nask H = V_out/V_in\\n' > lp.stage
   stagewright plot lp.stage --what magnitude,phase -o lp.svg
+"""
+
+
+NOTE = """\
+Write the design note: circuit, requirement, assumptions, derivation, design equations, values, response,
+checks, the sheet. Every displayed equation of the circuit was judged to hold by the program's own check.
+FILE ends in .tex (with its figures beside it), .html (one file) or .pdf.
+
+example: the note of a first-order low-pass
+  printf 'in -- R1 -- out -- C1 -- gnd\\nfix C1 = 10 nF\\nask H = V_out/V_in\\n' > lp.stage
+  echo 'target H: lowpass butterworth, order 1, edge 1 kHz' >> lp.stage
+  stagewright note lp.stage -o lp_note.html
 """
 
 
@@ -191,6 +204,7 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     form.add_argument("--json", action="store_true", help="print one JSON object")
     form.add_argument("--csv", action="store_true", help="write the curves as CSV")
     plot.add_argument("--replace", action="store_true", help="write over a file that is there")
+    _add_note(verbs)
     given = parser.parse_args(arguments)
     if given.verb == "plot" and not (given.output or given.csv or given.json):
         plot.error("where to? -o FILE takes the picture, --csv prints the curves")
@@ -201,6 +215,25 @@ def read_words(arguments: Sequence[str] | None) -> argparse.Namespace:
     if given.verb == "match" and given.replace and not given.workbook:
         match.error("--replace says how to write, and --workbook FILE.xlsx is missing")
     return given
+
+
+def _add_note(verbs: argparse._SubParsersAction[Words]) -> None:
+    note = _verb(verbs, "note", "the design note as a document", NOTE)
+    note.set_defaults(json=False)
+    note.add_argument(
+        "-o", dest="output", metavar="FILE", required=True, help="the note: .tex, .html or .pdf"
+    )
+    note.add_argument(
+        "--only",
+        metavar="SECTION,...",
+        help="only these sections: summary, circuit, requirement, assumptions, derivation, transfer, design, "
+        "values, response, amplifiers, checks, notes, sheet, caution",
+    )
+    note.add_argument(
+        "--fragment", action="store_true", help="only the equations, to paste into a document (.tex)"
+    )
+    note.add_argument("--date", metavar="YYYY-MM-DD", help="the note's date (today)")
+    note.add_argument("--replace", action="store_true", help="write over files that are there")
 
 
 def _count(text: str) -> int:

@@ -33,7 +33,7 @@ from symcirc.transfer.form import (
 from symcirc.transfer.standard import Forms
 
 #: Names that are no words of a sheet.
-GREEK = {"pi": r"\pi", "ω0": r"\omega_{0}"}
+GREEK = {"pi": r"\pi", "ω0": r"\omega_{0}", "Δω0": r"\Delta\omega_{0}", "ΔQ": r"\Delta Q"}
 #: The parameters of devices.
 PARAMETERS = ("gain", "gbw", "gm", "rm", "ratio")
 
@@ -137,13 +137,21 @@ def _factor(form: Form, in_brackets: tuple[type[Form], ...]) -> str:
     return rf"\left({latex(form)}\right)" if isinstance(form, in_brackets) else latex(form)
 
 
-def _divided(form: Divided) -> str:
-    """Write a fraction; sums of fractions above the line are written as brackets after it instead."""
+def fraction_and_brackets(form: Divided) -> tuple[Divided, list[Form]]:
+    """Return a fraction as it is written: sums of fractions above the line stand as brackets after it instead.
+
+    >>> fraction_and_brackets(Divided(Symbol("R1"), Symbol("R2")))
+    (Divided(above=Symbol(name='R1'), below=Symbol(name='R2')), [])
+    """
     factors = list(form.above.factors) if isinstance(form.above, Product) else [form.above]
-    after = [factor for factor in factors if isinstance(factor, Sum) and _holds_fraction(factor)]
-    above = product([factor for factor in factors if factor not in after])
-    fraction = rf"\frac{{{latex(above)}}}{{{latex(form.below)}}}"
-    return " ".join([fraction, *(_factor(factor, (Sum,)) for factor in after)])
+    after: list[Form] = [f for f in factors if isinstance(f, Sum) and _holds_fraction(f)]
+    return Divided(product([factor for factor in factors if factor not in after]), form.below), after
+
+
+def _divided(form: Divided) -> str:
+    fraction, after = fraction_and_brackets(form)
+    written = rf"\frac{{{latex(fraction.above)}}}{{{latex(fraction.below)}}}"
+    return " ".join([written, *(_factor(factor, (Sum,)) for factor in after)])
 
 
 def _holds_fraction(form: Form) -> bool:

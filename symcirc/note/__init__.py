@@ -1,0 +1,1 @@
+"""The design note: one document, written as LaTeX, HTML or PDF."""
