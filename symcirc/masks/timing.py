@@ -98,9 +98,11 @@ def settling_time(factors: Factors) -> float:
     """
     import numpy as np
 
+    from symcirc.responses.state_space import state_space
+
     slowest = min(-p.real for p in factors.poles)
     scale = float(np.exp(np.mean(np.log(np.abs(factors.poles)))))
-    state, drive, output = _state_space(factors, scale)
+    state, drive, output, _ = state_space(_scaled(factors, scale))
     # In the time of the geometric mean of the poles; the steady state is taken off, so that what is left decays.
     steady = np.linalg.solve(state, -drive).astype(float)
     sizes = np.array([abs(p) / scale for p in factors.poles])
@@ -119,29 +121,14 @@ def settling_time(factors: Factors) -> float:
     return 0.0
 
 
-def _state_space(factors: Factors, scale: float) -> tuple[Floats, Floats, Floats]:
-    """Return the matrices of the cascade, time in units of 1/scale: x' = A x + b u, y = c x + d u, with d left out."""
-    import numpy as np
-
-    order = len(factors.poles)
-    state, drive = np.zeros((order, order)), np.zeros(order)
-    output, direct, first = np.zeros(order), 1.0, 0
+def _scaled(factors: Factors, scale: float) -> list[tuple[list[float], list[float]]]:
+    """Return the sections with time in units of 1/scale, as many coefficients above as below."""
+    sections = []
     for over, under in factors.sections:
         n = len(under) - 1
-        below = [c / scale ** (n - k) for k, c in enumerate(under)]
         above = [c / scale ** (n - k) for k, c in enumerate(over)] + [0.0] * (n + 1 - len(over))
-        own = slice(first, first + n)
-        for k in range(n - 1):
-            state[first + k, first + k + 1] = 1.0
-        state[first + n - 1, own] = [-c for c in below[:n]]
-        state[first + n - 1] += output  # what comes from the sections before drives the last row
-        drive[first + n - 1] = direct
-        taps = np.array([above[k] - above[n] * below[k] for k in range(n)])
-        output = above[n] * output
-        output[own] += taps
-        direct *= above[n]
-        first += n
-    return state, drive, output
+        sections.append((above, [c / scale ** (n - k) for k, c in enumerate(under)]))
+    return sections
 
 
 def _last_outside(
@@ -154,9 +141,11 @@ def _last_outside(
     """
     import numpy as np
 
+    from symcirc.responses.state_space import exponential
+
     begin, step = window[0], (window[1] - window[0]) / count
-    block = _exponential(state * begin) @ -steady[:, None]
-    advance = _exponential(state * step)
+    block = exponential(state * begin) @ -steady[:, None]
+    advance = exponential(state * step)
     while block.shape[1] < count:
         block = np.concatenate([block, advance @ block], axis=1)
         advance = advance @ advance
@@ -165,19 +154,3 @@ def _last_outside(
         return None
     last = begin + step * float(outside[-1])
     return last, last + step
-
-
-def _exponential(matrix: Floats) -> Floats:
-    """Return e to a matrix by scaling and squaring of the series."""
-    import numpy as np
-
-    norm = float(np.max(np.abs(matrix).sum(axis=1)))
-    halvings = max(0, int(np.ceil(np.log2(norm))) + 2) if norm > 0 else 0
-    small = matrix / 2**halvings
-    result = term = np.eye(len(matrix))
-    for k in range(1, 16):
-        term = term @ small / k
-        result = result + term
-    for _ in range(halvings):
-        result = result @ result
-    return result

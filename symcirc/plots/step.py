@@ -1,8 +1,7 @@
 """What comes out for a unit step, from the state equations by the matrix exponential.
 
 The ratio is taken apart into real sections of first and second order in a row, so that no state is much larger than
-another, and multiple poles need no care. Scaling and squaring: Moler and Van Loan, "Nineteen dubious ways to compute
-the exponential of a matrix", SIAM Review 20 (1978) 801-836, method 3 (from memory).
+another, and multiple poles need no care.
 """
 
 from __future__ import annotations
@@ -10,9 +9,8 @@ from __future__ import annotations
 import numpy as np
 
 from symcirc.plots.rational import Complexes, Floats, Rational
+from symcirc.responses.state_space import exponential, state_space
 
-#: Terms of the exponential's series after scaling to a norm of 1/4 at most.
-_TERMS = 14
 #: A response has settled when it stays within this part of its largest value from its final one.
 _SETTLED = 0.01
 #: Points of the search for that, and decays of the slowest pole within which it lies.
@@ -31,12 +29,16 @@ def step_response(ratio: Rational, end: float, count: int) -> Floats:
     array([0.      , 0.632121, 0.864665])
     """
     assert ratio.is_proper
-    state, drive, output, direct = _state_space(ratio)
+    under = _sections(ratio.poles / ratio.frequency)
+    over = _above(_sections(ratio.zeros / ratio.frequency), [len(section) - 1 for section in under])
+    state, drive, output, direct = state_space(
+        list(zip(over, under, strict=True)), float(ratio.numerator[-1])
+    )
     order = len(drive)
     # the step is a state of its own, which stays at 1: no steady state is needed, so that poles at 0 do no harm
     whole = np.zeros((order + 1, order + 1))
     whole[:order, :order], whole[:order, order] = state, drive
-    advance = _exponential(whole * (end * ratio.frequency / (count - 1)))
+    advance = exponential(whole * (end * ratio.frequency / (count - 1)))
     block = np.zeros((order + 1, 1))
     block[order] = 1.0
     while block.shape[1] < count:
@@ -65,28 +67,6 @@ def step_length(ratio: Rational) -> float:
     return 1.4 * end * last / _SEARCHED
 
 
-def _state_space(ratio: Rational) -> tuple[Floats, Floats, Floats, float]:
-    """Return the matrices of sections in a row, time in units of 1/frequency: x' = A x + b u, y = c x + d u."""
-    under = _sections(ratio.poles / ratio.frequency)
-    over = _above(_sections(ratio.zeros / ratio.frequency), [len(section) - 1 for section in under])
-    order = len(ratio.denominator) - 1
-    state, drive = np.zeros((order, order)), np.zeros(order)
-    output, direct, first = np.zeros(order), ratio.numerator[-1], 0
-    for above, below in zip(over, under, strict=True):
-        n = len(below) - 1
-        own, last = slice(first, first + n), first + n - 1
-        for k in range(first, last):
-            state[k, k + 1] = 1.0
-        state[last, own] = -below[:n]
-        state[last] += output  # the last row is driven by what comes from the section before
-        drive[last] = direct
-        output = above[n] * output
-        output[own] = above[:n] - above[n] * below[:n]
-        direct *= above[n]
-        first += n
-    return state, drive, output, float(direct)
-
-
 def _sections(roots: Complexes) -> list[Floats]:
     """Return monic polynomials, ascending: one for each pair of roots (real ones paired by size), the odd one last."""
     real = sorted((float(r.real) for r in roots if r.imag == 0), key=abs)
@@ -109,16 +89,3 @@ def _above(sections: list[Floats], degrees: list[int]) -> list[Floats]:
         own = waiting.pop(0) if waiting else np.array([1.0])
         found.append(np.concatenate([own, np.zeros(degree + 1 - len(own))]))
     return found
-
-
-def _exponential(matrix: Floats) -> Floats:
-    norm = float(np.max(np.abs(matrix).sum(axis=1)))
-    halvings = max(0, int(np.ceil(np.log2(norm))) + 2) if norm > 0 else 0
-    small = matrix / 2.0**halvings
-    result = term = np.eye(len(matrix))
-    for k in range(1, _TERMS + 1):
-        term = term @ small / k
-        result = result + term
-    for _ in range(halvings):
-        result = result @ result
-    return np.asarray(result)

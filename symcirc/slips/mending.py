@@ -6,7 +6,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass, replace
 
 from symcirc.complaints import Complaint
-from symcirc.sheet.expression import Root, nodes
+from symcirc.sheet.expression import Expression, Root, fold, nodes
 from symcirc.slips.formal import Formal
 from symcirc.slips.lines import Row, cancelling, doubt, is_small
 from symcirc.slips.meant import Meant
@@ -36,6 +36,8 @@ LOST = ("factor lost", "term lost", "current lost")
 #: In a working with more subtrees in its false lines only the first lines are searched; and after so many lines
 #: for which nothing was found at all, the rest are searched for one slip only, and after four times as many no more.
 MOST_SPOTS, MOST_HOPELESS = 6_000, 10
+#: A side whose tree is deeper is not searched: the search goes down it by calls.
+DEEPEST = 200
 #: So many lines above a line say what names its author has in mind.
 MOST_ABOVE = 40
 
@@ -84,6 +86,8 @@ class Mender:
     def _mends(self, row: Row) -> list[_Ready]:
         equation = row.equation
         self.spots_left -= sum(1 for side in (equation.left, equation.right) for _ in nodes(side))
+        if max(map(_depth, (equation.left, equation.right))) > DEEPEST:
+            return []
         if self.spots_left < 0 or self.hopeless >= 4 * MOST_HOPELESS:
             return []
         for points in self._worlds(equation):
@@ -196,6 +200,10 @@ def _says_nothing(ready: _Ready, row: Row, formal: Formal) -> bool:
             return True
     was_of_circuit = formal.speaks_of_circuit(row.equation.left, row.equation.right)
     return was_of_circuit and not formal.speaks_of_circuit(left, right)
+
+
+def _depth(side: Expression) -> int:
+    return fold(side, lambda _, depths: 1 + max(depths, default=0))
 
 
 def _has_value(equation: Equation, points: Points) -> bool:

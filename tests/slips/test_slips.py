@@ -146,3 +146,11 @@ def test_another_ask_that_cannot_be_solved_is_no_hindrance() -> None:
     sheet = "in -- R1 -- m -- R2 -- out\nU1 opamp: plus gnd, minus m, drives out\nask H = V_out/V_in\n"
     sheet += "ask Z = V_in/I_in with V_m = 0\n"
     assert mended("V_in/R1 = V_out/R2", sheet).lines[-1].suggestions[0] == "V_in/R1 = -V_out/R2"
+
+
+def test_a_line_nested_as_deep_as_a_line_may_be_is_judged_and_not_searched() -> None:
+    nested = "s"
+    for _ in range(97):
+        nested = f"(1-2/-{nested}/3)"
+    line = mended(f"V_out = V_in*{nested}").lines[0]
+    assert (line.verdict, line.suggestions) == ("fails", ())
