@@ -60,7 +60,9 @@ def latex(form: Form) -> str:
         case Divided():
             return _divided(form)
         case Power():
-            base = _factor(form.base, (Sum, Negative, Divided, Product, Power, Root, Decimal))
+            base = _factor(form.base, (Sum, Negative, Divided, Product, Power, Root))
+            if isinstance(form.base, Decimal) and "e" in form.base.text:
+                base = rf"\left({base}\right)"
             return f"{base}^{{{form.exponent}}}"
     return rf"\sqrt{{{latex(form.operand)}}}"
 
