@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 
 import sympy
 
-from symcirc.complaints import Complaint
+from symcirc.complaints import Complaint, listed
 from symcirc.complaints import nearest as nearest_word
 from symcirc.masks.curve import Curve, build_curve
 from symcirc.masks.mask import Mask, kind_of
@@ -227,7 +227,7 @@ def _recommend(rows: list[Row]) -> tuple[Row, str]:
     name = best.candidate.family
     reason = f"{name}: order {order} is the least {what}"
     if len(equal) > 1:
-        others = " and ".join(row.candidate.family for row in equal if row is not best)
+        others = listed(dict.fromkeys(row.candidate.family for row in equal if row is not best))
         reason += f", and its highest Q of {best.highest_q:.3g} is below that of {others}"
     elif what == "of all" and plain:
         reason += f", {min(row.order for row in plain) - order} below the best without zeros"

@@ -92,6 +92,8 @@ def _met(aim: Aim) -> str:
     ask = aim.target.ask
     if aim.design is None:
         return f"there are no design equations for {ask}"
+    if aim.design.refusal is not None and not aim.design.unknowns:
+        return f"with the values that the sheet fixes {ask} is near its target ({target_words(aim)}), not exactly it"
     if aim.design.refusal is not None:
         return f"{ask} cannot meet its target ({target_words(aim)}) with what is given"
     meets = f"{ask} meets its target ({target_words(aim)})"

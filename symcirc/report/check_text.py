@@ -8,6 +8,9 @@ from collections.abc import Iterable, Iterator
 from symcirc.complaints import listed
 from symcirc.working.records import Checked, Line
 
+#: So many lines are named one by one.
+MOST_NAMED = 12
+
 
 def check_text(checked: Checked) -> Iterator[str]:
     """Yield every equality with its verdict, its slip and its mends, then a summary."""
@@ -39,6 +42,8 @@ def _remarks(line: Line) -> Iterator[str]:
         yield "a statement of its own: it does not follow from the lines above"
     if line.note:
         yield line.note
+    if line.verdict == "fails" and line.slip is None:
+        yield "false of the circuit; no small change to the line makes it true"
     if line.complaint is not None:
         yield f"column {line.complaint.place.column}: {line.complaint.mend}"
     for number, suggestion in enumerate(line.suggestions):
@@ -67,7 +72,8 @@ def summary(checked: Checked) -> Iterator[str]:
 
 def _after_mends(checked: Checked) -> Iterator[str]:
     if checked.still_false == ():
-        yield "with the first mend of each line put in, every line holds"
+        unread = any(line.verdict == "unread" for line in checked.lines)
+        yield f"with the first mend of each line put in, every line {'that could be read ' if unread else ''}holds"
     elif checked.still_false is not None:
         yield f"with the mends put in, {_lines(map(str, checked.still_false))} would still be false"
 
@@ -75,4 +81,6 @@ def _after_mends(checked: Checked) -> Iterator[str]:
 def _lines(numbers: Iterable[str]) -> str:
     """Return lines by their numbers, in words."""
     named = list(numbers)
+    if len(named) > MOST_NAMED:
+        named = [*named[: MOST_NAMED - 1], f"{len(named) - MOST_NAMED + 1} more"]
     return f"line{'s' if len(named) > 1 else ''} {listed(named)}"

@@ -74,7 +74,7 @@ def _certainty(found: Found) -> Iterator[str]:
     if found.left_out is None or not found.sets:
         return
     certain = sum(chosen.departure <= found.left_out for chosen in found.sets)
-    least = f"every set that the search dropped departs by at least {found.left_out:.3g} dB"
+    least = f"every other set that was searched departs by at least {found.left_out:.3g} dB"
     if certain == len(found.sets):
         yield f"  {least}, so none of them ranks among these"
     else:

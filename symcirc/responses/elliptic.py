@@ -30,7 +30,14 @@ from symcirc.responses.numeric import (
     squared_growth,
     working,
 )
-from symcirc.responses.prototype import Prototype, chebyshev, check_loss, check_order, rescaled
+from symcirc.responses.prototype import (
+    LARGEST_STOP_DB,
+    Prototype,
+    chebyshev,
+    check_loss,
+    check_order,
+    rescaled,
+)
 from symcirc.responses.rough import Rough
 
 #: A context of mpmath and a number of it: ``mpmath.mp`` has many digits, ``mpmath.fp`` is in doubles.
@@ -70,7 +77,7 @@ def elliptic(order: int, ripple_db: sympy.Expr, stop_db: sympy.Expr) -> Prototyp
     """
     check_order(order)
     check_loss(ripple_db, "the ripple")
-    check_loss(stop_db, "the stop loss")
+    check_loss(stop_db, "the stop loss", LARGEST_STOP_DB)
     if digits(stop_db, 20) - digits(ripple_db, 20) <= 0:
         raise ResponseError(
             f"the stop loss of {stop_db} dB is not above the ripple of {ripple_db} dB",

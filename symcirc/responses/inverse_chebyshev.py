@@ -11,6 +11,7 @@ from sympy import Integer, Rational
 
 from symcirc.responses.exact import KEPT_DIGITS, Coefficients, ResponseError, digits, two_cosine
 from symcirc.responses.prototype import (
+    LARGEST_STOP_DB,
     SHORT_ORDER,
     Prototype,
     check_loss,
@@ -40,7 +41,7 @@ def inverse_chebyshev(order: int, stop_db: sympy.Expr) -> Prototype:
     (1/5, 0, 1/10)
     """
     check_order(order)
-    check_loss(stop_db, "the stop loss")
+    check_loss(stop_db, "the stop loss", LARGEST_STOP_DB)
     gain = 10 ** (Rational(1, 20) * stop_db)
     root = (gain + sympy.sqrt(gain**2 - 1)) ** Rational(1, order)
     axis = (root - 1 / root) / 2

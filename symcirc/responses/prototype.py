@@ -33,6 +33,8 @@ from symcirc.responses.exact import (
 
 #: The highest order of a prototype, and the largest loss or ripple in dB.
 LARGEST_ORDER, LARGEST_LOSS_DB = 20, 100
+#: The largest stop loss: what the best converters see.
+LARGEST_STOP_DB = 200
 #: The loss at which half of the power is left, 3.0103 dB.
 HALF_POWER_DB = 10 * sympy.log(2) / sympy.log(10)
 
@@ -185,15 +187,15 @@ def all_pole(
     )
 
 
-def check_loss(loss_db: sympy.Expr, what: str) -> None:
-    """Refuse a loss or ripple that is no number, not positive or beyond 100 dB; ``what`` names it."""
+def check_loss(loss_db: sympy.Expr, what: str, largest: int = LARGEST_LOSS_DB) -> None:
+    """Refuse a loss or ripple that is no number, not positive or beyond the largest, in dB; ``what`` names it."""
     if not loss_db.is_number:
         raise ResponseError(
             f"{what} must be a number of dB, not {loss_db}", f"write {what} as a number of dB"
         )
-    if loss_db.is_zero or not 0 < digits(loss_db, 20) <= LARGEST_LOSS_DB:
+    if loss_db.is_zero or not 0 < digits(loss_db, 20) <= largest:
         raise ResponseError(
-            f"{what} must be above 0 dB and at most {LARGEST_LOSS_DB} dB",
+            f"{what} must be above 0 dB and at most {largest} dB",
             f"give a value in that range as {what}",
         )
 

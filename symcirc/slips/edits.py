@@ -204,6 +204,8 @@ def _sums(spot: Spot, node: Sum) -> Iterator[Edit]:
             yield Edit(spot, total([*terms[:k], pair, *terms[k + 2 :]]), 1.7, "sum for product", pair)
             beside = parallel([terms[k], terms[k + 1]])
             yield Edit(spot, total([*terms[:k], beside, *terms[k + 2 :]]), 1.5, "parallel for series", beside)
+            over = product([terms[k], terms[k + 1], Reciprocal(total([terms[k], terms[k + 1]]), NEW)])
+            yield Edit(spot, total([*terms[:k], over, *terms[k + 2 :]]), 1.6, "parallel for series", over)
     if len(terms) > 2 and not any(isinstance(term, Negative) for term in terms):
         yield Edit(spot, parallel(list(terms)), 1.6, "parallel for series", node)
 

@@ -6,7 +6,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass, replace
 
 from symcirc.complaints import Complaint
-from symcirc.sheet.expression import Expression, Root, fold, nodes
+from symcirc.sheet.expression import Expression, Number, Root, fold, names, nodes
 from symcirc.slips.formal import Formal
 from symcirc.slips.lines import Row, cancelling, doubt, is_small
 from symcirc.slips.meant import Meant
@@ -117,7 +117,7 @@ class Mender:
         for given in (False, True):
             if given and not self.judges.can_take_numbers(equation.context):
                 continue
-            for is_field in (True, False):
+            for is_field in (False,) if given else (True, False):  # the sheet's numbers are measured ones
                 points = self._made(equation.context, given, is_field)
                 if points is not None and _has_value(equation, points):
                     yield points
@@ -198,8 +198,20 @@ def _says_nothing(ready: _Ready, row: Row, formal: Formal) -> bool:
         one, other = ready.text.split("=")[:2]
         if "".join(one.split()) == "".join(other.split()):
             return True
-    was_of_circuit = formal.speaks_of_circuit(row.equation.left, row.equation.right)
-    return was_of_circuit and not formal.speaks_of_circuit(left, right)
+    sides = (row.equation.left, row.equation.right)
+    if not formal.speaks_of_circuit(*sides) and any(not list(names(side)) for side in sides):
+        return not _is_of_numbers(ready.mend)  # a value that was worked out: only a number can belong there
+    return formal.speaks_of_circuit(*sides) and not formal.speaks_of_circuit(left, right)
+
+
+def _is_of_numbers(mend: Mend) -> bool:
+    """Tell whether a mend puts numbers in the place of numbers."""
+    return all(
+        edit.kind == "exchanged"
+        and isinstance(edit.spot.node, Number)
+        and isinstance(edit.replacement, Number)
+        for edit in mend.edits
+    )
 
 
 def _depth(side: Expression) -> int:

@@ -183,7 +183,8 @@ class Writer(ABC):
             case Product():
                 return self.product(node)
             case Negative():
-                return "-" + self.at_least(node.operand, PRODUCT)
+                operand = self.at_least(node.operand, PRODUCT)
+                return operand[1:] if operand.startswith("-") else "-" + operand
             case Reciprocal():
                 raise AssertionError("what stands below a line is its product's business")
             case Power():

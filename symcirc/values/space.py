@@ -30,6 +30,8 @@ REACH, MOST_SETS = 5, 10_000_000
 MOST_COMBINATIONS = 1_000_000
 #: Of so many values pairs are made: some millions.
 MOST_PAIRED = 2_000
+#: No part's range goes on further than this from its exact values.
+MOST_DECADES = 12.0
 
 
 @dataclass(frozen=True)
@@ -128,7 +130,7 @@ def _lists(plan: Plan, searched: Mapping[str, Real], reach: int) -> dict[str, Ch
     for kind in {plan.buyables[name].kind: None for name in searched}:
         buyable = next(b for b in plan.sheet.buyables if b.kind == kind)
         exact = np.concatenate([v for name, v in searched.items() if plan.buyables[name].kind == kind])
-        decades = 10.0 ** (1 + reach / int((buyable.series or "E3")[1:]))
+        decades = 10.0 ** min(1 + reach / int((buyable.series or "E3")[1:]), MOST_DECADES)
         near = (float(exact.min()) / decades, float(exact.max()) * decades)
         lists[kind] = _choices(plan.sheet, buyable, near, pairs=buyable.pairs)
     return lists

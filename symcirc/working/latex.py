@@ -1,10 +1,11 @@
 r"""The display mathematics of a LaTeX file as lines of a working, every character with its place.
 
-Read are the environments equation, align and gather, starred or not, ``\[ \]`` and ``$$``; in them ``\frac``,
-``\dfrac``, ``\tfrac``, ``\sqrt``, subscripts, whole exponents, ``\left \right``, ``\cdot``, ``\times``, ``\parallel``,
-``\omega``, ``\pi``, names as ``symcirc.transfer.latex`` writes them, spaces and alignment. A row that is
-``\text{under } NAME`` or ``\text{under NAME}`` alone says under which ask's drives the rows after it stand. Whatever
-else stands in a row makes that row unread, with the place: nothing is guessed.
+Read are the environments equation, align and gather, starred or not, with split, aligned and gathered in them,
+``\[ \]`` and ``$$``; in them ``\frac``, ``\dfrac``, ``\tfrac``, ``\sqrt``, subscripts, whole exponents, ``\left``,
+``\right``, ``\bigl`` and the like, ``\cdot``, ``\times``, ``\parallel``, ``\omega``, ``\pi``, names as
+``symcirc.transfer.latex`` writes them, spaces and alignment. A row that is ``\text{under } NAME`` or
+``\text{under NAME}`` alone says under which ask's drives the rows after it stand. Whatever else stands in a row makes
+that row unread, with the place: nothing is guessed.
 """
 
 from __future__ import annotations
@@ -19,9 +20,12 @@ from symcirc.transfer.latex import PARAMETERS
 from symcirc.working.written import Written
 
 _OPENING = re.compile(r"\\begin\{((?:equation|align|gather)\*?)\}|\\\[|\$\$")
+#: What says how large the bracket behind it is.
+_SIZE = re.compile(r"\\(?:left|right|[bB]igg?[lr]?)")
 #: What is no mathematics: comments, labels and the like.
 _ASIDE = re.compile(
     r"(?<!\\)%[^\n]*|\\(?:label|tag)\{[^{}\n]*\}|\\(?:nonumber|notag|displaystyle)(?![A-Za-z])"
+    r"|\\(?:begin|end)\{(?:split|aligned|gathered)\}"
 )
 _TOKEN = re.compile(
     r"\\\\(?:\[[^\]\n]*\])?|\\[A-Za-z]+|\\.|[A-Za-z]+|[0-9]+\.?[0-9]*|\.[0-9]+|\s+|.", re.DOTALL
@@ -237,7 +241,7 @@ class _Translator:
         if _is_space(token):
             self.space(at)
             return
-        if text in ("\\left", "\\right"):
+        if _SIZE.fullmatch(text):
             self.sized = at
             return
         if text in _SIGNS:

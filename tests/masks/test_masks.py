@@ -8,6 +8,7 @@ from itertools import pairwise
 
 import pytest
 import sympy
+from scipy import signal
 
 from symcirc.complaints import Complaint, Source
 from symcirc.goal import build_goal
@@ -146,13 +147,19 @@ def test_a_stop_band_with_an_end_and_a_tolerated_slope_between_are_no_trouble() 
     assert found["elliptic, ripple 1 dB, stop 40 dB"] == 3
 
 
-def test_a_limit_of_100_db_and_more_leaves_out_the_families_that_cannot_have_it() -> None:
-    selection = select(mask("loss <= 1 dB below 1 kHz", "loss >= 120 dB above 10 kHz"))
-    assert {f.candidate.family for f in selection.failures if "at most 100 dB" in f.reason} == {
+def test_a_limit_beyond_200_db_leaves_out_the_families_that_cannot_have_it() -> None:
+    selection = select(mask("loss <= 1 dB below 1 kHz", "loss >= 210 dB above 100 kHz"))
+    assert {f.candidate.family for f in selection.failures if "at most 200 dB" in f.reason} == {
         "inverse chebyshev",
         "elliptic",
     }
-    assert {row.candidate.family: row.order for row in selection.rows}["butterworth"] == 7
+    assert {row.candidate.family: row.order for row in selection.rows}["butterworth"] == 6
+
+
+def test_a_steep_mask_of_120_db_is_met_by_the_order_that_the_reference_library_finds() -> None:
+    limits = ("loss <= 0.01 dB below 10 kHz", "loss >= 120 dB above 10.5 kHz")
+    order, _ = signal.ellipord(2 * math.pi * 1e4, 2 * math.pi * 1.05e4, 0.01, 120, analog=True)
+    assert orders(*limits) == {"elliptic, ripple 0.01 dB, stop 120 dB": order}
 
 
 def test_every_row_meets_its_mask_and_one_order_less_does_not() -> None:

@@ -207,7 +207,7 @@ def test_elliptic_stop_band_has_equal_ripple_at_the_stop_loss(order: int) -> Non
             "stop loss of 3 dB is not above the ripple of 3",
         ),
         (
-            lambda: elliptic(3, sympy.Integer(3), sympy.Integer(120)),
+            lambda: elliptic(3, sympy.Integer(3), sympy.Integer(201)),
             "the stop loss must be above 0 dB and at most",
         ),
         (lambda: inverse_chebyshev(3, sympy.Integer(0)), "the stop loss must be above 0 dB"),

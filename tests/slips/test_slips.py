@@ -154,3 +154,30 @@ def test_a_line_nested_as_deep_as_a_line_may_be_is_judged_and_not_searched() -> 
         nested = f"(1-2/-{nested}/3)"
     line = mended(f"V_out = V_in*{nested}").lines[0]
     assert (line.verdict, line.suggestions) == ("fails", ())
+
+
+@pytest.mark.parametrize(
+    ("line", "mend"),
+    [
+        ("1/(2 pi R3 C2) = 16000", "1/(2 pi R3 C2) = 15392"),
+        ("C1/C2 = 11", "C1/C2 = 10"),
+        ("R1 = 5000", "R1 = 10000"),
+    ],
+)
+def test_a_value_that_was_worked_out_is_mended_by_the_value(line: str, mend: str) -> None:
+    assert last(line, WITH_VALUES).suggestions == (mend,)
+
+
+@pytest.mark.parametrize("line", ["R1 = 5", "1 = 2", "C1/C2 = 7"])
+def test_a_statement_about_parts_alone_gets_no_mend_that_says_nothing(line: str) -> None:
+    assert last(line).suggestions == ()
+
+
+def test_parts_in_series_where_they_are_parallel_are_written_out_where_the_line_has_the_sign_already() -> (
+    None
+):
+    assert last("R1 || R3 = R1 + R3").suggestions[0] == "R1 || R3 = R1 R3/(R1 + R3)"
+
+
+def test_a_minus_sign_is_never_written_twice() -> None:
+    assert not any("--" in mend.replace(" ", "") for mend in last("Va = -C2 R3 Vo/R2").suggestions)

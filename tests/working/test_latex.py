@@ -235,3 +235,11 @@ def test_an_unknown_ask_is_named_with_its_place() -> None:
 
 def test_a_parameter_called_under_is_a_name() -> None:
     assert read_back(r"\mathrm{under} R_{1} = k") == "under R1 = k"
+
+
+def test_split_and_sized_brackets_are_read() -> None:
+    text = r"""\begin{equation*}\begin{split}
+  V_{out} &= \frac{V_{in}}{1 + s R_1 C_1} \\
+          &= V_{in} \bigl( 1 + s R_1 C_1 \bigr)^{-1}
+\end{split}\end{equation*}"""
+    assert [line.verdict for line in checked(RC, text, "a.tex").lines] == ["holds", "holds"]
