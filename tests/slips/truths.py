@@ -29,6 +29,8 @@ from tests.working.books import DERIVATIONS
 
 #: Random sheets of more parts are left out.
 MOST_PARTS = 8
+#: So are those of which there is next to nothing to derive, as V_x/V_x = 1.
+FEWEST_LINES = 4
 
 
 def workings(seed: int, count: int) -> Iterator[tuple[str, str]]:
@@ -37,8 +39,13 @@ def workings(seed: int, count: int) -> Iterator[tuple[str, str]]:
     yield from ((sheets[derivation.stage], derivation.lines) for derivation in DERIVATIONS)
     rng = random.Random(seed)
     yield from ((sheet, steps) for sheet in sheets.values() if (steps := _steps(sheet, 100)) is not None)
-    drawn = (random_sheet(rng) for _ in range(count))
-    yield from ((sheet, steps) for sheet in drawn if (steps := _steps(sheet, MOST_PARTS)) is not None)
+    for sheet in (random_sheet(rng) for _ in range(count)):
+        steps = _steps(sheet, MOST_PARTS)
+        if (
+            steps is not None
+            and sum("=" in line and line[0] != "#" for line in steps.split("\n")) >= FEWEST_LINES
+        ):
+            yield sheet, steps
 
 
 def _steps(sheet: str, most_parts: int) -> str | None:
