@@ -14,7 +14,7 @@ MODE = 0o644
 
 def refuse_existing(path: Path) -> None:
     """Raise Complaint for a file that is there already."""
-    if path.exists():
+    if os.path.lexists(path):  # a link that leads nowhere takes the name, too
         raise refuse_file(path, "is there already", "give another name, or write over it: --replace")
 
 

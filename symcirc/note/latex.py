@@ -30,8 +30,8 @@ from symcirc.note.tex_table import table_lines
 from symcirc.note.tex_text import BREAK, LONGEST_WORD, bookmark, bound, scripts, tex, tex_line, text_width
 from symcirc.transfer.latex import latex as formula
 
-#: The text's width in points and in em, and the widest formula inside a sentence, in em.
-TEXT_POINTS, TEXT_EM, INLINE_EM = 455.0, 41.0, 24.0
+#: The text's width in points, and the widest formula inside a sentence, in em.
+TEXT_POINTS, INLINE_EM = 455.0, 24.0
 #: The largest part of the page that a figure is high.
 _HIGH = 0.42
 

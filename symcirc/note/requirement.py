@@ -119,7 +119,7 @@ def _polynomial(side: tuple[sympy.Expr, ...]) -> Form:
     """Return a polynomial in descending powers of s, which stands behind its coefficients' numbers."""
     terms = []
     for k, coefficient in reversed(list(enumerate(side))):
-        form = expression_form(sympy.sympify(coefficient))
+        form = expression_form(coefficient)
         if form != ZERO:
             terms.append(_times(form, power(Symbol("s"), k) if k else ONE))
     return total(terms)

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Any
 
 import numpy as np
 import sympy
@@ -193,10 +192,10 @@ def _target(sheet: Sheet, goal: Goal) -> Rational:
     return rational(*sides)
 
 
-def _exact(sheet: Sheet, goal: Goal, coefficient: Any) -> sympy.Expr:
+def _exact(sheet: Sheet, goal: Goal, coefficient: sympy.Expr) -> sympy.Expr:
     """Return a target's coefficient as a number, the sheet's numbers put in; raises Complaint where it is none."""
-    number = sympy.sympify(coefficient)
-    number = number.subs({s: sheet.numbers[s.name] for s in number.free_symbols if s.name in sheet.numbers})
+    known = {s: sheet.numbers[s.name] for s in coefficient.free_symbols if s.name in sheet.numbers}
+    number = coefficient.subs(known)
     if number.free_symbols:
         left = listed(sorted(map(str, number.free_symbols)))
         raise Complaint(

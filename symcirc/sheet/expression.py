@@ -6,7 +6,7 @@ ever reaches ``eval`` or sympy's own text parsers.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import TypeVar
@@ -142,23 +142,26 @@ def roots(expression: Expression) -> Iterator[Root]:
     return (node for node in nodes(expression) if isinstance(node, Root))
 
 
+def with_children(node: Expression, operands: Sequence[Expression]) -> Expression:
+    """Return a node with other operands, at the same place."""
+    match node:
+        case Sum():
+            return Sum(tuple(operands), node.place)
+        case Product():
+            return Product(tuple(operands), node.place)
+        case Power():
+            return Power(operands[0], node.exponent, node.place)
+        case Negative() | Reciprocal() | Root():
+            return type(node)(operands[0], node.place)
+        case _:
+            return node
+
+
 def rename(expression: Expression, new_text: Callable[[Name], str]) -> Expression:
     """Return the expression with every name's text replaced by ``new_text(name)``."""
 
     def combine(node: Expression, operands: list[Expression]) -> Expression:
-        match node:
-            case Name():
-                return Name(new_text(node), node.place)
-            case Sum():
-                return Sum(tuple(operands), node.place)
-            case Product():
-                return Product(tuple(operands), node.place)
-            case Power():
-                return Power(operands[0], node.exponent, node.place)
-            case Negative() | Reciprocal() | Root():
-                return type(node)(operands[0], node.place)
-            case _:
-                return node
+        return Name(new_text(node), node.place) if isinstance(node, Name) else with_children(node, operands)
 
     return fold(expression, combine)
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
-from symcirc.sheet.expression import Expression, Negative, Power, Product, Reciprocal, Root, Sum, children
+from symcirc.sheet.expression import Expression, children, with_children
 
 
 @dataclass
@@ -36,18 +36,3 @@ def _edited(
     rebuilt = with_children(node, changed)
     originals[id(rebuilt)] = node
     return rebuilt
-
-
-def with_children(node: Expression, operands: list[Expression]) -> Expression:
-    """Return a node with other operands, at the same place."""
-    match node:
-        case Sum():
-            return Sum(tuple(operands), node.place)
-        case Product():
-            return Product(tuple(operands), node.place)
-        case Power():
-            return Power(operands[0], node.exponent, node.place)
-        case Negative() | Reciprocal() | Root():
-            return type(node)(operands[0], node.place)
-        case _:
-            return node

@@ -14,8 +14,6 @@ from symcirc.workbook.cells import Area, Formula, Page, Worksheet, reference
 #: Steps of the frequency axis.
 STEPS = 400
 
-Column = Sequence[float | None]
-
 
 @dataclass(frozen=True)
 class Polynomials:

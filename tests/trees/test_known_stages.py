@@ -13,10 +13,10 @@ import sympy
 
 from symcirc.circuit.model import CurrentDrive, VoltageDrive
 from symcirc.sheet.model import GROUND
-from symcirc.trees.amplifiers import loop_setup, with_finite_gain
 from symcirc.trees.answer import determinants, ratio
 from symcirc.trees.collect import collected
 from symcirc.trees.count import count
+from tests.trees.amplifiers import loop_setup, with_finite_gain
 from tests.trees.samples import PLACE, circuit, device, node_current, part, part_current, setup, voltage
 
 FROM_INPUT = VoltageDrive("in", GROUND)
